@@ -1,0 +1,175 @@
+"""Solved steps to the record's entries: formula, numbers as printed, result."""
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from typing import Any
+
+from calcpack.formula.text import printed_quantity, to_text
+from calcpack.formula.tree import Node, PropertyCall, symbols_of, walk
+from calcpack.plan.laid import LaidStep
+from calcpack.plan.steps import LookupStep, RootStep, SeriesStep
+from calcpack.record.identity import step_identity
+from calcpack.solve.program import neighbours
+from calcpack.solve.solution import Solution, printed_freely
+from calcpack.units import print_unit, read_quantity, shown_with_unit
+from calcpack.units.digits import number_text
+
+
+def step_entries(solution: Solution, identities: dict[str, str]) -> list[dict[str, Any]]:
+    """All steps; ``identities`` starts with the inputs' and gains each step's."""
+    return [_entry(solution, step, identities) for step in solution.plan.steps]
+
+
+def _entry(solution: Solution, step: LaidStep, identities: dict[str, str]) -> dict[str, Any]:
+    symbol = step.symbol
+    entry: dict[str, Any] = {
+        "id": step.id, "symbol": symbol, "title": step.step.title, "kind": step.kind,
+        "formula": formula_text(step), "numbers": numbers_text(solution, step),
+        "value": float(solution.value(symbol)), "unit": step.unit.symbol, "shown": solution.printing.shown(symbol),
+        "also_shown": solution.also_shown(symbol), "uses": list(step.uses),
+        "reference": step.step.reference or None, "note": step.step.note or None,
+        "section": str(step.step.section + 1), "own": step.step.place is not None}
+    detail = _DETAILS.get(step.kind)
+    if detail is not None:
+        entry[step.kind if step.kind != "series" else "table"] = detail(solution, step)
+    identities[symbol] = entry["identity"] = step_identity(
+        symbol, step.kind, _formulas(solution, step), step.unit.symbol, step.uses, identities, _fluids(solution, step))
+    return entry
+
+
+def formula_text(step: LaidStep) -> str:
+    """What the record keeps as the step's formula, in the formula language where it has one."""
+    match step.step:
+        case SeriesStep(reduction=reduction, column=column):
+            return f"{reduction} of {column}"
+        case LookupStep():
+            return f"table at {to_text(step.tree)}"
+    if step.kind == "choice":
+        return "; ".join(f"{branch.value} if {branch.when}" if branch.when else f"{branch.value} otherwise"
+                         for branch in step.step.branches)
+    return to_text(step.tree)
+
+
+def numbers_text(solution: Solution, step: LaidStep) -> str:
+    """The formula with its operands as printed; for a choice, of the branch that held."""
+    match step.step:
+        case SeriesStep() | RootStep():
+            return ""
+    if step.kind == "choice":
+        held = solution.program.held[step.symbol]
+        return solution.numbers(step.trees[f"value {held}"])
+    return solution.numbers(step.tree)
+
+
+def _formulas(solution: Solution, step: LaidStep) -> list[str]:
+    texts = [formula_text(step), *(f"{name}: {to_text(tree)}" for name, tree in step.trees.items())]
+    texts += [f"{column.symbol}: {to_text(column.tree)}" for column in step.columns if column.tree is not None]
+    match step.step:
+        case LookupStep(points=points):
+            texts += [f"{x}: {y}" for x, y in points]
+        case RootStep():
+            # A root hangs on all that its body reads; the body's own symbols stand by their formulas.
+            texts += [to_text(one.tree) for one in root_body(solution, step.symbol) if one.tree is not None]
+    return texts
+
+
+def root_body(solution: Solution, symbol: str) -> list[LaidStep]:
+    """The steps between a root and its closing that the equation needs, in order."""
+    from calcpack.plan.steps import Closing
+    inside: list[LaidStep] = []
+    started = False
+    for item in solution.plan.items:
+        if isinstance(item, LaidStep):
+            if item.symbol == symbol:
+                started = True
+            elif started:
+                inside.append(item)
+        elif isinstance(item, Closing) and item.symbol == symbol:
+            break
+    needed = set(symbols_of(solution.step(symbol).tree))
+    for step in reversed(inside):
+        if step.symbol in needed:
+            needed |= set(step.uses)
+    return [step for step in inside if step.symbol in needed]
+
+
+def _fluids(solution: Solution, step: LaidStep) -> list[str]:
+    trees = [tree for tree in (step.tree, *step.trees.values(), *(c.tree for c in step.columns)) if tree is not None]
+    roles = [part.fluid for tree in trees for part in walk(tree) if isinstance(part, PropertyCall)]
+    return [solution.plan.fluids[role].identity for role in dict.fromkeys(roles)]
+
+
+def _root(solution: Solution, step: LaidStep) -> dict[str, Any]:
+    """The equation, the bracket used, and what is left of the equation at the printed solution."""
+    root = solution.program.roots[step.symbol]
+    printed = solution.printing.printed(step.symbol)
+    left = solution.program.residual_at(step.symbol, printed, solution.values)
+    equation_unit = print_unit(_equation_dimension(solution, step), solution.system)
+    closing = [name for name in symbols_of(step.tree) if not _given_before(solution, step, name)]
+    decimals = solution.printing.decimals[step.symbol]
+    return {"unknown": step.symbol, "equation": to_text(step.tree), "low": _end(step, root.low, decimals),
+            "high": _end(step, root.high, decimals), "low_formula": to_text(step.trees["low"]),
+            "high_formula": to_text(step.trees["high"]), "residual": printed_freely(left, equation_unit, 2),
+            "residual_value": float(left), "iterations": root.evaluations,
+            "closed_by": [solution.step(name).id for name in closing]}
+
+
+def _end(step: LaidStep, value: float, decimals: int) -> str:
+    return shown_with_unit(number_text(step.unit.from_si(value), min(2, max(0, decimals))), step.unit)
+
+
+def _equation_dimension(solution: Solution, step: LaidStep) -> Any:
+    from calcpack.formula.dimension import measure
+    known = {name: one.measure for name, one in solution.plan.inputs.items()}
+    known |= {one.symbol: one.measure for one in solution.plan.steps}
+    return measure(step.tree, lambda symbol: known[symbol.name], "").dimension
+
+
+def _given_before(solution: Solution, step: LaidStep, name: str) -> bool:
+    if name in solution.plan.inputs or name == step.symbol:
+        return True
+    order = [one.symbol for one in solution.plan.steps]
+    return order.index(name) < order.index(step.symbol)
+
+
+def _choice(solution: Solution, step: LaidStep) -> dict[str, Any]:
+    held = solution.program.held[step.symbol]
+    branches = []
+    for index, branch in enumerate(step.step.branches):
+        numbers = solution.numbers(step.trees[f"when {index}"]) if branch.when else ""
+        branches.append({"condition": branch.when, "condition_numbers": numbers, "held": index == held,
+                         "value": branch.value, "label": branch.label, "reached": index <= held})
+    return {"branches": branches}
+
+
+def _lookup(solution: Solution, step: LaidStep) -> dict[str, Any]:
+    points = [(read_quantity(x).value, read_quantity(y).value) for x, y in step.step.points]
+    below, above = neighbours(points, solution.program.value_of(step.tree)(
+        [*(solution.values[name] for name in solution.program.slots), 0.0]))
+    texts = [list(step.step.points[points.index(point)]) for point in (below, above)]
+    return {"source": step.step.source, "x": to_text(step.tree), "points": [list(pair) for pair in step.step.points],
+            "neighbours": texts}
+
+
+def _table(solution: Solution, step: LaidStep) -> dict[str, Any]:
+    columns = [{"symbol": column.symbol, "title": column.title, "unit": column.unit.symbol,
+                "formula": to_text(column.tree) if column.tree is not None else ""} for column in step.columns]
+    rows = []
+    for index, (row, cells) in enumerate(zip(step.step.rows, solution.program.tables[step.symbol], strict=True)):
+        rows.append({"label": row.label, "cells": _cells(solution, step, index, cells)})
+    return {"columns": columns, "rows": rows, "reduction": step.step.reduction, "column": step.step.column}
+
+
+def _cells(solution: Solution, step: LaidStep, row: int, values: list[float]) -> list[dict[str, Any]]:
+    local: dict[str, Node] = {}
+    cells = []
+    for column, value in zip(step.columns, values, strict=True):
+        shown = solution.printing.shown(column.symbol, value)
+        tree = column.tree if column.tree is not None else step.trees[f"row {row}"]
+        cells.append({"value": float(value), "shown": shown, "numbers": solution.numbers(tree, local)})
+        local[column.symbol] = printed_quantity(shown, column.unit.symbol)
+    return cells
+
+
+_DETAILS: Mapping[str, Callable[[Solution, LaidStep], dict[str, Any]]] = {
+    "root": _root, "choice": _choice, "lookup": _lookup, "series": _table}

@@ -1,0 +1,81 @@
+"""A residual and a bracket to the root in it, by scipy's Brent method.
+
+The bracket that the sheet states is the one that was used: where a property
+cannot be had at an end of the bracket laid down, that end moves inwards.
+"""
+from __future__ import annotations
+
+import math
+from collections.abc import Callable
+from dataclasses import dataclass
+
+from calcpack.errors import Fault, NoAnswerError, RootError
+
+RELATIVE = 1e-11
+"""Width to which a root is found, relative to the bracket."""
+
+_INWARDS = (0.0, 1 / 128, 1 / 64, 1 / 32, 1 / 16, 1 / 8, 1 / 4, 3 / 8, 1 / 2)
+_SCAN = 16
+
+
+@dataclass(frozen=True, slots=True)
+class Root:
+    """A root [SI], the bracket used, and the number of evaluations."""
+
+    value: float
+    low: float
+    high: float
+    evaluations: int
+
+
+def find_root(residual: Callable[[float], float], low: float, high: float) -> Root:
+    """The root of ``residual`` between ``low`` and ``high``.
+
+    Raises
+    ------
+    RootError
+        Where the residual has one sign all over the bracket, or the bracket
+        is empty; ``found`` gives the residuals at its ends. The reason why an
+        end could not be evaluated is kept as detail.
+    """
+    from scipy.optimize import brentq
+    if not (math.isfinite(low) and math.isfinite(high) and low < high):
+        raise RootError(Fault("the bracket is empty", found=f"from {low:.6g} to {high:.6g} (SI)"))
+    a, at_a, trouble_a = _usable_end(residual, low, high)
+    b, at_b, trouble_b = _usable_end(residual, high, low)
+    if at_a * at_b > 0.0:
+        a, at_a, b, at_b = _scan(residual, (a, at_a), (b, at_b), trouble_a or trouble_b)
+    if at_a == 0.0 or at_b == 0.0:
+        return Root(a if at_a == 0.0 else b, a, b, 2)
+    solution, report = brentq(residual, a, b, xtol=RELATIVE * max(abs(a), abs(b)), rtol=1e-13, maxiter=200,
+                              full_output=True)
+    return Root(float(solution), a, b, report.function_calls)
+
+
+def _usable_end(residual: Callable[[float], float], end: float, other: float) -> tuple[float, float, str | None]:
+    """The end nearest to ``end`` where the residual can be had, and the residual there."""
+    trouble: NoAnswerError | None = None
+    for share in _INWARDS:
+        x = end + share * (other - end)
+        try:
+            return x, residual(x), trouble.faults[0].what if trouble else None
+        except NoAnswerError as error:
+            trouble = trouble or error
+    raise trouble or RootError(Fault("the bracket is empty"))
+
+
+def _scan(residual: Callable[[float], float], first: tuple[float, float], last: tuple[float, float],
+          trouble: str | None) -> tuple[float, float, float, float]:
+    """Look for a change of sign inside, since the ends have the same."""
+    before = first
+    for index in range(1, _SCAN):
+        x = first[0] + (last[0] - first[0]) * index / _SCAN
+        try:
+            here = (x, residual(x))
+        except NoAnswerError:
+            continue
+        if before[1] * here[1] <= 0.0:
+            return *before, *here
+        before = here
+    raise RootError(Fault("the equation has no root in its bracket", detail=trouble, found=(
+        f"left minus right is {first[1]:.4g} at the low end and {last[1]:.4g} at the high end (SI)")))
