@@ -151,7 +151,8 @@ def _source_line(fault: Fault, texts: Mapping[str, str]) -> list[str]:
     rows = texts[place.file].splitlines()
     if not 1 <= place.line <= len(rows):
         return []
-    row = rows[place.line - 1].expandtabs(1)
+    # A character that a terminal would act on, or not show, is printed as a mark of its own.
+    row = "".join(letter if letter.isprintable() else "�" for letter in rows[place.line - 1].expandtabs(1))
     start, row = _window(row, place.column)
     room = max(1, min(place.length, len(row) - start))
     caret = " " * start + "^" * room

@@ -32,7 +32,8 @@ def rank(node: Node) -> int:
 def needs_brackets(parent: Binary | Compare | Logic, child: Node, *, right: bool) -> bool:
     """Whether ``child`` must stand in brackets as an operand of ``parent``."""
     if isinstance(child, Negative):
-        return right or parent.op == "^"
+        # A negative number as printed always stands in brackets beside an operator.
+        return right or parent.op == "^" or isinstance(child.operand, (Number, Quantity))
     if isinstance(child, (Number, Quantity)):
         return parent.op == "^" and not right and (isinstance(child, Quantity) or rank(child) < _ATOM)
     if rank(child) != RANK[parent.op]:
@@ -51,8 +52,8 @@ def to_text(node: Node) -> str:
             return name
         case Negative(operand=operand):
             inner = to_text(operand)
-            return f"-({inner})" if rank(operand) < _NEGATIVE and not isinstance(operand, (Number, Quantity)) \
-                else f"-{inner}"
+            loose = rank(operand) < _NEGATIVE and not isinstance(operand, (Number, Quantity))
+            return f"-({inner})" if loose or isinstance(operand, Negative) else f"-{inner}"
         case Binary(op="^", left=left, right=right):
             return f"{_operand(node, left, False)}^{_operand(node, right, True)}"
         case Binary(op=op, left=left, right=right) | Compare(op=op, left=left, right=right) | \

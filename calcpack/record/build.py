@@ -11,8 +11,8 @@ from calcpack.record.identity import input_identity
 from calcpack.record.record import FORMAT, Record
 from calcpack.record.steps import step_entries
 from calcpack.record.views import exchangers, sketch, states, streams
-from calcpack.solve.curves import diagrams
-from calcpack.solve.solution import Solution, celsius_twin
+from calcpack.solving.curves import diagrams
+from calcpack.solving.solution import Solution, celsius_twin
 from calcpack.units import print_unit, read_quantity, shown_with_unit, unit
 from calcpack.units.digits import number_text
 
@@ -144,7 +144,7 @@ def _used_by(steps: list[dict[str, Any]]) -> dict[str, list[str]]:
 
 def engine(solution: Solution) -> dict[str, Any]:
     """What computed the record: versions, platform, tolerances."""
-    from calcpack.solve.roots import RELATIVE
+    from calcpack.solving.roots import RELATIVE
     return {"calcpack": calcpack.__version__, "python": platform.python_version(),
             "platform": f"{platform.system()} {platform.machine()}",
             "libraries": {name: version(name) for name in LIBRARIES},

@@ -9,8 +9,8 @@ from calcpack.formula.tree import Node, PropertyCall, symbols_of, walk
 from calcpack.plan.laid import LaidStep
 from calcpack.plan.steps import LookupStep, RootStep, SeriesStep
 from calcpack.record.identity import step_identity
-from calcpack.solve.program import neighbours
-from calcpack.solve.solution import Solution, printed_freely
+from calcpack.solving.program import neighbours
+from calcpack.solving.solution import Solution, printed_freely
 from calcpack.units import print_unit, read_quantity, shown_with_unit
 from calcpack.units.digits import number_text
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 from typing import Any
 
 from calcpack.plan.facts import ExchangerView
-from calcpack.solve.solution import Solution
+from calcpack.solving.solution import Solution
 
 Quantity = dict[str, Any]
 

@@ -110,6 +110,7 @@ UNITS: dict[str, tuple[str, tuple[str, ...]]] = {
     "cm²": ("centimeter**2", ()),
     "ft²": ("foot**2", ()),
     "in²": ("inch**2", ()),
+    "bar/L": ("bar/liter", ()),
     "m³": ("meter**3", ()),
     "L": ("liter", ("l", "dm³")),
     "cm³": ("centimeter**3", ()),

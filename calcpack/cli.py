@@ -1,0 +1,195 @@
+"""The commands: parse, call, print. No engineering here.
+
+Exit status: 0 solved and every limit holds; 1 a limit fails, or a comparison
+differs; 2 the spec or the command is wrong; 3 the numbers have no answer; 4 a
+part of the machine is missing.
+"""
+from __future__ import annotations
+
+import sys
+from collections.abc import Callable, Sequence
+from functools import wraps
+from pathlib import Path
+from typing import Any
+
+import click
+
+from calcpack import __version__
+from calcpack.errors import CalcpackError, CommandError, Fault, describe
+
+CONTEXT = {"help_option_names": ["-h", "--help"], "max_content_width": 100}
+
+
+def reported(command: Callable[..., int]) -> Callable[..., None]:
+    """Print faults as a compiler does and leave with their status; else with the command's."""
+    @wraps(command)
+    def run(*arguments: Any, **options: Any) -> None:
+        try:
+            status = command(*arguments, **options)
+        except CalcpackError as error:
+            click.echo(describe(error.faults, _texts(error.faults)), err=True)
+            status = error.exit_status
+        except BrokenPipeError:
+            # The reader of our output has gone, as 'head' does; nothing is wrong.
+            sys.stderr.close()
+            status = 0
+        sys.exit(status)
+    return run
+
+
+def _texts(faults: Sequence[Fault]) -> dict[str, str]:
+    """The texts of the files that faults point into, where they can be read."""
+    texts = {}
+    for name in {fault.place.file for fault in faults if fault.place}:
+        try:
+            texts[name] = Path(name).read_text("utf-8", errors="replace")
+        except OSError:
+            continue
+    return texts
+
+
+def _overrides(pairs: Sequence[str]) -> dict[str, str]:
+    found = {}
+    for pair in pairs:
+        symbol, sign, value = pair.partition("=")
+        if not sign or not symbol.strip() or not value.strip():
+            raise CommandError(Fault(f"--set {pair}: a symbol and a value are meant", expected="--set T_e='2 degC'"))
+        found[symbol.strip()] = value.strip()
+    return found
+
+
+@click.group(context_settings=CONTEXT)
+@click.version_option(__version__, "--version", message="calcpack %(version)s")
+def main() -> None:
+    """Engineering calculation packages for heat engines and heat pumps.
+
+    Specs in YAML are solved with real-fluid properties; every equation and value is printed in a sheet
+    that another engineer can check.
+    """
+
+
+@main.command()
+@click.argument("method")
+@click.option("-o", "--output", type=click.Path(path_type=Path), help="File to write; else printed.")
+@click.option("--option", "options", multiple=True, metavar="NAME=VALUE", help="An option of the method.")
+@reported
+def new(method: str, output: Path | None, options: tuple[str, ...]) -> int:
+    """Write a commented spec with every input that METHOD takes."""
+    from calcpack.methods.starter import starter
+    from calcpack.writing import write_new
+    text = starter(method, _overrides(options))
+    if output is None:
+        click.echo(text, nl=False)
+    else:
+        write_new(output, text)
+        click.echo(f"wrote {output}")
+    return 0
+
+
+@main.command()
+@click.argument("specs", nargs=-1, required=True, type=click.Path(path_type=Path))
+@click.option("--json", "as_json", is_flag=True, help="Print the record (a list for several specs).")
+@click.option("--set", "pairs", multiple=True, metavar="SYMBOL=VALUE", help="Replace an input's value.")
+@click.option("--steps", is_flag=True, help="Print every step too.")
+@click.option("-q", "--quiet", is_flag=True, help="Print results and failed limits only.")
+@reported
+def solve(specs: tuple[Path, ...], as_json: bool, pairs: tuple[str, ...], steps: bool, quiet: bool) -> int:
+    """Solve SPECS; print results, limits, checks and cautions."""
+    from calcpack.pipeline import solve_all
+    records = solve_all(specs, _overrides(pairs))
+    if as_json:
+        click.echo(_json(records), nl=False)
+    else:
+        from calcpack.terminal import print_record
+        for record in records:
+            print_record(record, steps=steps, quiet=quiet)
+    return 1 if any(record.failed_limits for record in records) else 0
+
+
+def _json(records: Sequence[Any]) -> str:
+    if len(records) == 1:
+        return records[0].to_json()
+    return "[\n" + ",\n".join(record.to_json().rstrip("\n") for record in records) + "\n]\n"
+
+
+@main.command()
+@click.argument("sources", nargs=-1, type=click.Path(path_type=Path))
+@click.option("-o", "--output", type=click.Path(path_type=Path), default=Path("site"), show_default=True,
+              help="Folder of the site.")
+@click.option("--no-pdf", is_flag=True, help="Leave the PDFs out.")
+@click.option("--jobs", type=click.IntRange(1, 64), default=None, help="Processes; as many as cores if left out.")
+@click.option("-q", "--quiet", is_flag=True, help="Print nothing but faults.")
+@reported
+def build(sources: tuple[Path, ...], output: Path, no_pdf: bool, jobs: int | None, quiet: bool) -> int:
+    """Build the site: register, a page and a PDF a sheet, records. SOURCES are specs or folders (default: specs)."""
+    from calcpack.pipeline import build_package
+    from calcpack.terminal import print_built, progress
+    with progress(quiet) as tell:
+        package = build_package(sources or (Path("specs"),), output, pdf=not no_pdf, jobs=jobs, tell=tell)
+    if not quiet:
+        print_built(package, output)
+    return 1 if any(record.failed_limits for record in package.records) else 0
+
+
+@main.command()
+@click.argument("old")
+@click.argument("new")
+@click.option("--format", "shape", type=click.Choice(["text", "markdown", "html", "json"]), default="text",
+              show_default=True)
+@click.option("-o", "--output", type=click.Path(path_type=Path), help="File to write; else printed.")
+@reported
+def compare(old: str, new: str, shape: str, output: Path | None) -> int:
+    """Show what changed between two revisions of a sheet.
+
+    OLD and NEW are each a spec, a record, a PDF that carries one, or REV:path in git. Exit status 1 if they differ.
+    """
+    from calcpack.revisions import differs, load, rendered
+    from calcpack.revisions.compare import compare as compared
+    from calcpack.writing import write_whole
+    comparison = compared(load(old), load(new))
+    text = rendered(comparison, shape)
+    if output is None:
+        click.echo(text, nl=False)
+    else:
+        write_whole(output, text)
+    return 1 if differs(comparison) else 0
+
+
+@main.command(name="methods")
+@click.argument("method", required=False)
+@click.option("--units", is_flag=True, help="List the units that can be written instead.")
+@reported
+def methods_command(method: str | None, units: bool) -> int:
+    """List the methods, or show METHOD in detail."""
+    from calcpack.terminal import print_method, print_methods, print_units
+    if units:
+        print_units()
+    elif method is None:
+        print_methods()
+    else:
+        print_method(method)
+    return 0
+
+
+@main.command()
+@click.argument("fluid", required=False)
+@reported
+def fluids(fluid: str | None) -> int:
+    """List the fluids of the register, or show FLUID in detail."""
+    from calcpack.terminal import print_fluid, print_fluids
+    if fluid is None:
+        print_fluids()
+    else:
+        print_fluid(fluid)
+    return 0
+
+
+@main.command()
+@reported
+def schema() -> int:
+    """Print the JSON Schema of a spec, for editors."""
+    import json
+
+    from calcpack.spec import json_schema
+    click.echo(json.dumps(json_schema(), indent=2, ensure_ascii=False))
+    return 0

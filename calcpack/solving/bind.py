@@ -1,0 +1,257 @@
+"""A spec bound to its method: fluids opened, inputs read, the plan laid.
+
+Everything that can be wrong before a number is computed is found here, and
+told at once.
+"""
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import TYPE_CHECKING, Any
+
+from calcpack.errors import CalcpackError, Fault, SpecError, UnitError, nearest
+from calcpack.formula.dimension import TEMPERATURE
+from calcpack.methods import Method, methods
+from calcpack.plan.facts import InputNeed
+from calcpack.plan.laid import LaidInput, LaidPlan
+from calcpack.plan.lay import lay
+from calcpack.plan.outputs import measure_of_kind, measure_of_unit
+from calcpack.plan.plan import Plan
+from calcpack.solving.own import add_own_steps
+from calcpack.units import Reading, kind_of_unit, print_unit, read_quantity
+
+if TYPE_CHECKING:
+    from calcpack.spec import Spec
+
+
+@dataclass(frozen=True, slots=True)
+class Bound:
+    """A spec ready to be solved: its method, options, laid plan and input readings."""
+
+    spec: Spec
+    method: Method
+    options: Mapping[str, str]
+    plan: LaidPlan
+    readings: Mapping[str, Reading]
+    written: Mapping[str, str]
+
+
+def bind(spec: Spec, overrides: Mapping[str, str] | None = None,
+         earlier: tuple[Fault, ...] = ()) -> Bound:
+    """Bind ``spec``; ``overrides`` replace input values, ``earlier`` are faults already found.
+
+    Raises
+    ------
+    SpecError
+        With every fault, the earlier ones first, in the order of the file.
+    """
+    binder = _Binder(spec, dict(overrides or {}))
+    bound = binder.bind()
+    faults = [*earlier, *binder.faults]
+    if faults or bound is None:
+        raise SpecError(sorted(faults, key=lambda fault: (fault.place.line, fault.place.column)
+                               if fault.place else (0, 0)))
+    return bound
+
+
+class _Binder:
+    def __init__(self, spec: Spec, overrides: dict[str, str]) -> None:
+        self.spec = spec
+        self.overrides = overrides
+        self.faults: list[Fault] = []
+        self.readings: dict[str, Reading] = {}
+        self.written: dict[str, str] = {}
+
+    def bind(self) -> Bound | None:
+        method = self.method()
+        if method is None:
+            return None
+        options = self.options(method)
+        fluids = self.fluids(method, options)
+        plan = Plan(options, fluids)
+        count = len(self.faults)
+        self.guarded(lambda: method.lay(plan), ("case", "options"))
+        inputs = self.inputs(plan.needs)
+        self.guarded(lambda: add_own_steps(plan, self.spec), ("steps",))
+        if len(self.faults) > count and not plan.items:
+            return None
+        laid, faults = lay(plan, inputs, self.spec.sheet.units,
+                           lambda fault, path: self.spec.located(fault, *path), self.spec.dropped)
+        # A method's steps cannot be proved where an option, a fluid or an input of its own is at fault.
+        self.faults += [fault for fault in faults if fault.place is not None or not self.faults]
+        self.outside(laid)
+        return Bound(self.spec, method, options, laid, self.readings, self.written)
+
+    def guarded(self, call: Any, path: tuple) -> None:
+        try:
+            call()
+        except CalcpackError as error:
+            self.faults += [fault.at(self.spec.place(*path, key=True)) for fault in error.faults]
+
+    def fault(self, what: str, path: tuple, *, key: bool = False, **more: str | None) -> None:
+        self.faults.append(Fault(what, self.spec.place(*path, key=key), **more))
+
+    def method(self) -> Method | None:
+        known = methods()
+        name = self.spec.case.method
+        if name not in known:
+            self.fault(f"there is no method {name!r}", ("case", "method"), expected="one of " + ", ".join(known),
+                       hint=nearest(name, known))
+        return known.get(name)
+
+    def options(self, method: Method) -> dict[str, str]:
+        chosen: dict[str, str] = {}
+        for name, value in self.spec.case.options.items():
+            option = method.option(name)
+            if option is None:
+                names = [one.name for one in method.options]
+                self.fault(f"{method.name} has no option {name!r}", ("case", "options", name), key=True,
+                           expected="one of " + ", ".join(names) if names else "no options",
+                           hint=nearest(name, names))
+            elif value not in option.values:
+                self.fault(f"option {name} cannot be {value!r}", ("case", "options", name),
+                           expected="one of " + ", ".join(option.values), hint=nearest(value, option.values))
+            else:
+                chosen[name] = value
+        return method.complete(chosen)
+
+    def fluids(self, method: Method, options: Mapping[str, str]) -> dict[str, Any]:
+        from calcpack.fluids import open_fluid
+        wanted = {role.name: role for role in method.roles(options)}
+        opened: dict[str, Any] = {}
+        for name, definition in self.spec.case.fluids.items():
+            if wanted and name not in wanted and not self.spec.steps:
+                self.fault(f"{method.name} has no use for a fluid {name!r} with these options",
+                           ("case", "fluids", name), key=True, expected="one of " + ", ".join(wanted),
+                           hint=nearest(name, wanted))
+                continue
+            try:
+                opened[name] = open_fluid(definition)
+            except CalcpackError as error:
+                self.faults += [fault.at(self.spec.place("case", "fluids", name)) for fault in error.faults]
+        for name, role in wanted.items():
+            if name not in self.spec.case.fluids:
+                self.fault(f"the fluid {name!r} is missing", ("case",), key=True,
+                           expected=f"case.fluids.{name}: {role.title.lower()}, such as {role.typical}")
+        return opened
+
+    def inputs(self, needs: Mapping[str, InputNeed]) -> dict[str, LaidInput]:
+        laid: dict[str, LaidInput] = {}
+        given = self.spec.case.inputs
+        for symbol in self.overrides:
+            if symbol not in given and symbol not in needs:
+                self.faults.append(Fault(f"--set {symbol}: there is no input of that symbol",
+                                         hint=nearest(symbol, [*given, *needs])))
+        for symbol, need in needs.items():
+            if symbol in self.spec.dropped:
+                continue
+            if symbol not in given and symbol not in self.overrides and need.default is None:
+                self.fault(f"the input {symbol!r} is missing", ("case",), key=True,
+                           expected=f"case.inputs.{symbol}: {need.title[:1].lower()}{need.title[1:]}, "
+                                    f"such as {need.typical!r}")
+                continue
+            reading = self.reading(symbol, need)
+            if reading is not None:
+                laid[symbol] = _laid(symbol, need.title, reading, need, self.spec.sheet.units)
+        for symbol in given:
+            if symbol not in needs:
+                reading = self.reading(symbol, None)
+                if reading is not None:
+                    laid[symbol] = _laid(symbol, given[symbol].title or symbol, reading, None, self.spec.sheet.units)
+        return laid
+
+    def reading(self, symbol: str, need: InputNeed | None) -> Reading | None:
+        """Read an input and keep it; None and a fault where it cannot be read."""
+        given = self.spec.case.inputs.get(symbol)
+        text = self.overrides.get(symbol, given.value if given else (need.default if need else ""))
+        place = self.spec.place("case", "inputs", symbol, "value") if given and symbol not in self.overrides else None
+        kind = need.kind if need else _own_kind(symbol, text)
+        try:
+            reading = read_quantity(text, kind, p_atm=self.spec.sheet.p_atm)
+            if need is not None:
+                _require_range(reading, need, text)
+        except UnitError as error:
+            for fault in error.faults:
+                shown = fault if place else Fault(f"--set {symbol}: {fault.what}", None, fault.found, fault.expected,
+                                                  fault.hint)
+                self.faults.append(shown.at(place))
+            return None
+        self.readings[symbol] = reading
+        self.written[symbol] = text.strip()
+        self.tolerance(symbol, reading)
+        return reading
+
+    def tolerance(self, symbol: str, reading: Reading) -> None:
+        given = self.spec.case.inputs.get(symbol)
+        if given is None or given.tol is None:
+            return
+        kind = kind_of_unit(reading.unit)
+        name = "temperature difference" if reading.unit.dimension == TEMPERATURE else kind.name if kind else None
+        try:
+            if read_quantity(given.tol, name).value < 0.0:
+                raise UnitError(Fault("a tolerance is not negative", found=repr(given.tol)))
+        except UnitError as error:
+            self.faults += [fault.at(self.spec.place("case", "inputs", symbol, "tol")) for fault in error.faults]
+
+    def outside(self, laid: LaidPlan) -> None:
+        """Results and limits must name symbols of this sheet."""
+        known = [*laid.inputs, *(step.symbol for step in laid.steps)]
+        if any(fault.place is None or fault.what.startswith(("the input", "the fluid")) for fault in self.faults):
+            return
+        for index, result in enumerate(self.spec.results):
+            if result.symbol not in known:
+                self.fault(f"the result {result.symbol!r} has no value on this sheet", ("results", index),
+                           hint=nearest(result.symbol, known))
+        for index, limit in enumerate(self.spec.limits):
+            if limit.symbol not in known:
+                self.fault(f"the limited quantity {limit.symbol!r} has no value on this sheet",
+                           ("limits", index, "symbol"), hint=nearest(limit.symbol, known))
+                continue
+            self.limit_bound(laid, index, known)
+
+    def limit_bound(self, laid: LaidPlan, index: int, known: list[str]) -> None:
+        limit = self.spec.limits[index]
+        if limit.bound in known:
+            return
+        measure = laid.inputs[limit.symbol].measure if limit.symbol in laid.inputs else laid.step(limit.symbol).measure
+        unit = laid.inputs[limit.symbol].unit if limit.symbol in laid.inputs else laid.step(limit.symbol).unit
+        kind = kind_of_unit(unit)
+        name = ("temperature" if measure.level == 1.0 else "temperature difference") \
+            if measure.dimension == TEMPERATURE else kind.name if kind else None
+        try:
+            read_quantity(limit.bound, name, p_atm=self.spec.sheet.p_atm)
+        except UnitError as error:
+            self.faults += [fault.at(self.spec.place("limits", index, limit.key)) for fault in error.faults]
+
+
+def _own_kind(symbol: str, text: str) -> str | None:
+    """An engineer's own input in K is a difference where its symbol says so (``dT_…``), else a level."""
+    spelled = text.split()[-1] if len(text.split()) > 1 else ""
+    if spelled in ("K", "degR", "°R"):
+        return "temperature difference" if symbol.startswith(("dT", "Delta")) else "temperature"
+    return None
+
+
+def _laid(symbol: str, title: str, reading: Reading, need: InputNeed | None, system: str) -> LaidInput:
+    if need is not None:
+        measure = measure_of_kind(need.kind)
+    elif symbol.startswith(("dT", "Delta")) and reading.unit.dimension == TEMPERATURE:
+        measure = measure_of_kind("temperature difference")
+    elif reading.unit.dimension == TEMPERATURE:
+        measure = measure_of_kind("temperature")
+    else:
+        measure = measure_of_unit(reading.unit.symbol)
+    return LaidInput(symbol, title, measure, print_unit(measure.dimension, system, reading.unit), need)
+
+
+def _require_range(reading: Reading, need: InputNeed, text: str) -> None:
+    """Raise where an input is outside what the method can take."""
+    low = read_quantity(need.low, need.kind).value if need.low is not None else None
+    high = read_quantity(need.high, need.kind).value if need.high is not None else None
+    below = low is not None and (reading.value < low or (need.low_open and reading.value == low))
+    above = high is not None and reading.value > high
+    if below or above:
+        ends = [f"above {need.low}" if need.low_open else f"at least {need.low}"] if need.low is not None else []
+        ends += [f"at most {need.high}"] if need.high is not None else []
+        raise UnitError(Fault(f"{need.symbol}, {need.title[:1].lower()}{need.title[1:]}, is out of its range",
+                              found=repr(text.strip()), expected=" and ".join(ends), hint=need.note or None))

@@ -1,0 +1,248 @@
+"""A laid plan to a program: one list of values, one function a step, roots as nested blocks.
+
+Evaluation is bare floats in SI. A program is compiled once and run for a
+solution, for a root's trial values, for a check with printed values.
+"""
+from __future__ import annotations
+
+import math
+from collections.abc import Callable, Mapping
+from dataclasses import replace
+from typing import Any
+
+from calcpack.errors import Fault, NoAnswerError
+from calcpack.formula.evaluate import Compiled, compiled
+from calcpack.formula.text import to_text
+from calcpack.formula.tree import Node, PropertyCall, symbols_of
+from calcpack.plan.laid import LaidDemand, LaidPlan, LaidStep
+from calcpack.plan.steps import Closing, LookupStep, RootStep, SeriesStep
+from calcpack.solving.roots import Root, find_root
+from calcpack.units import read_quantity
+
+Instruction = tuple[int, Callable[[list[Any]], Any]]
+
+
+class Program:
+    """A plan compiled; ``slots`` says where in the list of values each symbol stands.
+
+    Attributes
+    ----------
+    roots : dict of str to Root
+        Of the last run, each root's bracket and count of evaluations.
+    tables : dict of str to list of list of float
+        Of the last run, the rows of each series.
+    held : dict of str to int
+        Of the last run, the branch that held in each choice.
+    """
+
+    def __init__(self, plan: LaidPlan) -> None:
+        self.plan = plan
+        names = [*plan.inputs, *(step.symbol for step in plan.steps)]
+        names += [column.symbol for step in plan.steps for column in step.columns]
+        self.slots = {name: index for index, name in enumerate(dict.fromkeys(names))}
+        self.step_at = {self.slots[step.symbol]: step for step in plan.steps}
+        self.roots: dict[str, Root] = {}
+        self.tables: dict[str, list[list[float]]] = {}
+        self.held: dict[str, int] = {}
+        self.functions: dict[str, Callable[[list[Any]], Any]] = {}
+        self.bodies: dict[str, tuple[list[Instruction], Compiled]] = {}
+        self.compiled_trees: dict[Node, Callable[[list[Any]], Any]] = {}
+        self.spare = len(self.slots)
+        self.block = self._block(list(plan.items), 0)[0]
+
+    def run(self, inputs: Mapping[str, float]) -> dict[str, float]:
+        """All values by symbol, inputs included.
+
+        Raises
+        ------
+        NoAnswerError
+            With the step's number and symbol in the message.
+        """
+        values: list[Any] = [0.0] * (self.spare + 1)
+        for name, value in inputs.items():
+            values[self.slots[name]] = value
+        self._run(self.block, values)
+        self._require_real(values)
+        return {name: values[index] for name, index in self.slots.items()}
+
+    def _run(self, block: list[Instruction], values: list[Any]) -> None:
+        slot = 0
+        try:
+            for slot, function in block:
+                values[slot] = function(values)
+        except NoAnswerError as error:
+            raise (_named(error, self.step_at[slot]) if slot in self.step_at else error) from None
+        except (ArithmeticError, ValueError, TypeError) as error:
+            raise NoAnswerError(Fault(_arithmetic(error), hint=_where(self.step_at[slot]), detail=str(error))) from None
+
+    def _require_real(self, values: list[Any]) -> None:
+        for slot, step in self.step_at.items():
+            value = values[slot]
+            if isinstance(value, complex) or not math.isfinite(value):
+                raise NoAnswerError(Fault(f"step {step.id}, {step.symbol}: the result is not a finite real number",
+                                          found=str(value)))
+
+    def _block(self, items: list[LaidStep | Closing | LaidDemand], start: int,
+               until: str | None = None) -> tuple[list[Instruction], int]:
+        block: list[Instruction] = []
+        index = start
+        while index < len(items):
+            item = items[index]
+            if isinstance(item, Closing):
+                if item.symbol == until:
+                    return block, index
+                index += 1
+                continue
+            if isinstance(item, LaidDemand):
+                block.append((self.spare, self._demand(item)))
+                index += 1
+                continue
+            if isinstance(item.step, RootStep):
+                body, index = self._block(items, index + 1, item.symbol)
+                function = self._root(item, body)
+            else:
+                function = self._function(item)
+            self.functions[item.symbol] = function
+            block.append((self.slots[item.symbol], function))
+            index += 1
+        return block, index
+
+    def _root(self, step: LaidStep, body: list[Instruction]) -> Callable[[list[Any]], float]:
+        slot = self.slots[step.symbol]
+        equation = compiled(step.tree, self.slots)
+        low, high = (compiled(step.trees[name], self.slots) for name in ("low", "high"))
+        self.bodies[step.symbol] = (body, equation)
+
+        def solve(values: list[Any]) -> float:
+            def residual(trial: float) -> float:
+                values[slot] = trial
+                self._run(body, values)
+                found = equation(values)
+                if isinstance(found, complex) or not math.isfinite(found):
+                    raise NoAnswerError(Fault("the equation has no real value here"))
+                return found
+            root = find_root(residual, low(values), high(values))
+            self.roots[step.symbol] = root
+            residual(root.value)
+            return root.value
+        return solve
+
+    def residual_at(self, symbol: str, trial: float, values: Mapping[str, float]) -> float:
+        """The root equation's value with ``trial`` for the unknown and its body run again [SI]."""
+        body, equation = self.bodies[symbol]
+        listed = [*(values[name] for name in self.slots), 0.0]
+        listed[self.slots[symbol]] = trial
+        self._run(body, listed)
+        return equation(listed)
+
+    def _function(self, step: LaidStep) -> Callable[[list[Any]], Any]:
+        match step.step:
+            case SeriesStep():
+                return self._series(step)
+            case LookupStep():
+                return self._lookup(step)
+        if step.kind == "choice":
+            return self._choice(step)
+        return self.value_of(step.tree)
+
+    def _demand(self, demand: LaidDemand) -> Callable[[list[Any]], float]:
+        holds = compiled(demand.condition, self.slots)
+        names = symbols_of(demand.condition)
+
+        def require(values: list[Any]) -> float:
+            if not holds(values):
+                found = ", ".join(f"{name} = {values[self.slots[name]]:.6g}" for name in names)
+                raise NoAnswerError(Fault(demand.text, found=f"{found} (SI)", hint=demand.hint,
+                                          expected=to_text(demand.condition)))
+            return 0.0
+        return require
+
+    def value_of(self, tree: Node) -> Callable[[list[Any]], Any]:
+        """The compiled function of a tree, formula or property look-up; compiled once."""
+        if tree not in self.compiled_trees:
+            self.compiled_trees[tree] = self._compiled(tree)
+        return self.compiled_trees[tree]
+
+    def _compiled(self, tree: Node) -> Callable[[list[Any]], Any]:
+        if not isinstance(tree, PropertyCall):
+            return compiled(tree, self.slots)
+        reader = self.plan.fluids[tree.fluid].reader(tree.output, tuple(key for key, _ in tree.given))
+        given = [compiled(value, self.slots) for _, value in tree.given]
+        if len(given) == 2:
+            first, second = given
+            return lambda v: reader(first(v), second(v))
+        return lambda v: reader(*[part(v) for part in given])
+
+    def _choice(self, step: LaidStep) -> Callable[[list[Any]], Any]:
+        branches = step.step.branches
+        conditions = [compiled(step.trees[f"when {i}"], self.slots) if branch.when else (lambda v: True)
+                      for i, branch in enumerate(branches)]
+        results = [compiled(step.trees[f"value {i}"], self.slots) for i in range(len(branches))]
+
+        def choose(values: list[Any]) -> Any:
+            index = next(i for i, condition in enumerate(conditions) if condition(values))
+            self.held[step.symbol] = index
+            return results[index](values)
+        return choose
+
+    def _lookup(self, step: LaidStep) -> Callable[[list[Any]], float]:
+        of = compiled(step.tree, self.slots)
+        points = [(read_quantity(x).value, read_quantity(y).value) for x, y in step.step.points]
+        return lambda v: interpolated(points, of(v))
+
+    def _series(self, step: LaidStep) -> Callable[[list[Any]], float]:
+        firsts = [compiled(step.trees[f"row {i}"], self.slots) for i in range(len(step.step.rows))]
+        slots = [self.slots[column.symbol] for column in step.columns]
+        others = [(slot, self.value_of(column.tree)) for slot, column in zip(slots[1:], step.columns[1:], strict=True)]
+        pick = [column.symbol for column in step.columns].index(step.step.column)
+        reduce = _REDUCTIONS[step.step.reduction]
+
+        def tabulate(values: list[Any]) -> float:
+            rows = []
+            for first in firsts:
+                values[slots[0]] = first(values)
+                for slot, function in others:
+                    values[slot] = function(values)
+                rows.append([values[slot] for slot in slots])
+            self.tables[step.symbol] = rows
+            return reduce([row[pick] for row in rows])
+        return tabulate
+
+
+_REDUCTIONS: dict[str, Callable[[list[float]], float]] = {
+    "min": min, "max": max, "sum": math.fsum, "mean": lambda values: math.fsum(values) / len(values)}
+
+
+def interpolated(points: list[tuple[float, float]], x: float) -> float:
+    """Linear interpolation in ascending ``points``; outside them is an error, not a guess."""
+    if not points[0][0] <= x <= points[-1][0]:
+        raise NoAnswerError(Fault("the value looked up is outside the table", found=f"{x:.6g} (SI)",
+                                  expected=f"from {points[0][0]:.6g} to {points[-1][0]:.6g} (SI)"))
+    (x0, y0), (x1, y1) = neighbours(points, x)
+    return y0 + (y1 - y0) * (x - x0) / (x1 - x0)
+
+
+def neighbours(points: list[tuple[float, float]], x: float) -> tuple[tuple[float, float], tuple[float, float]]:
+    """The two points of the table between which ``x`` lies."""
+    index = next((i for i in range(1, len(points)) if x <= points[i][0]), len(points) - 1)
+    return points[index - 1], points[index]
+
+
+def _where(step: LaidStep) -> str:
+    return f"see step {step.id}, {step.symbol} = {step.step.formula}"
+
+
+def _named(error: NoAnswerError, step: LaidStep) -> NoAnswerError:
+    """The same error, naming the innermost step that met it."""
+    if any(fault.what.startswith("step ") for fault in error.faults):
+        return error
+    title = step.step.title[:1].lower() + step.step.title[1:]
+    return type(error)(replace(fault, what=f"step {step.id}, {step.symbol} ({title}): {fault.what}")
+                       for fault in error.faults)
+
+
+def _arithmetic(error: Exception) -> str:
+    if isinstance(error, ZeroDivisionError):
+        return "a division by zero"
+    return "a root or logarithm of a number that has none" if isinstance(error, ValueError) \
+        else "arithmetic without a real result"
