@@ -11,7 +11,7 @@ from calcpack.formula.tree import Node, PropertyCall, Symbol, symbols_of
 from calcpack.plan.laid import LaidColumn, LaidDemand, LaidInput, LaidPlan, LaidStep
 from calcpack.plan.outputs import PROPERTIES, measure_of_property, measure_of_unit
 from calcpack.plan.plan import Plan
-from calcpack.plan.steps import ChoiceStep, Closing, Demand, LookupStep, PropertyStep, RootStep, SeriesStep, Step
+from calcpack.plan.steps import ChoiceStep, Closing, Demand, LookupStep, OptimumStep, PropertyStep, RootStep, SeriesStep, Step
 from calcpack.units import Unit, dimension_text, print_unit, read_quantity, unit
 
 Locate = Callable[[Fault, tuple[str | int, ...]], Fault]
@@ -47,7 +47,7 @@ class _Layer:
         self.faults: list[Fault] = []
         self.counts: dict[int, int] = {}
         self.later = {step.symbol for step in plan.steps}
-        self.open: dict[str, RootStep] = {}
+        self.open: dict[str, RootStep | OptimumStep] = {}
 
     def lay(self, item: Step | Closing | Demand) -> None:
         try:
@@ -81,7 +81,7 @@ class _Layer:
         match step:
             case PropertyStep():
                 result = self.property(step, number)
-            case RootStep():
+            case RootStep() | OptimumStep():
                 result = self.root(step, number)
             case ChoiceStep():
                 result = self.choice(step, number)
@@ -180,7 +180,7 @@ class _Layer:
         """Ask the fluid, before any number is known, whether it can answer this."""
         self.plan.fluids[call.fluid].reader(call.output, tuple(key for key, _ in call.given))
 
-    def root(self, step: RootStep, number: str) -> LaidStep:
+    def root(self, step: RootStep | OptimumStep, number: str) -> LaidStep:
         found = measure_of_unit(step.unit or "")
         trees = {"low": parse(step.low), "high": parse(step.high)}
         for name, tree in trees.items():

@@ -7,7 +7,7 @@ from typing import Any
 
 from calcpack.plan.facts import Facts, InputNeed
 from calcpack.plan.steps import (
-    Branch, ChoiceStep, Closing, Column, Demand, LookupStep, PropertyStep, RootStep, Row, SeriesStep, Step)
+    Branch, ChoiceStep, Closing, Column, Demand, LookupStep, OptimumStep, PropertyStep, RootStep, Row, SeriesStep, Step)
 
 
 class Plan:
@@ -75,6 +75,12 @@ class Section:
              unit: str | None = None, **more: str) -> str:
         """An unknown; the plan's ``close`` must follow once ``equation`` can be evaluated."""
         return self._add(RootStep(symbol, title, equation, unit, low=between[0], high=between[1], **more))
+
+    def optimum(self, symbol: str, objective: str, between: tuple[str, str], title: str, unit: str | None = None,
+                sense: str = "greatest", **more: str) -> str:
+        """A free value at which ``objective`` is greatest or least; the plan's ``close`` must follow."""
+        return self._add(OptimumStep(symbol, title, objective, unit, low=between[0], high=between[1], sense=sense,
+                                     **more))
 
     def choice(self, symbol: str, branches: Iterable[tuple[str, str, str]], title: str,
                unit: str | None = None, **more: str) -> str:

@@ -50,8 +50,23 @@ class RootStep(Step):
 
 
 @dataclass(frozen=True, slots=True)
+class OptimumStep(Step):
+    """A free value, chosen where ``formula``, the objective, is greatest (or least) between ``low`` and ``high``.
+
+    As with a root, the objective may use the free value and any step up to the
+    plan's :class:`Closing` of it. ``sense`` is ``greatest`` or ``least``.
+    """
+
+    low: str = ""
+    high: str = ""
+    sense: str = "greatest"
+
+    kind = "optimum"
+
+
+@dataclass(frozen=True, slots=True)
 class Closing:
-    """Here the steps that a root's equation needs are complete."""
+    """Here the steps that a root's equation or an optimum's objective needs are complete."""
 
     symbol: str
 

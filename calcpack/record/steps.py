@@ -7,12 +7,12 @@ from typing import Any
 from calcpack.formula.text import printed_quantity, to_text
 from calcpack.formula.tree import Node, PropertyCall, symbols_of, walk
 from calcpack.plan.laid import LaidStep
-from calcpack.plan.steps import LookupStep, RootStep, SeriesStep
+from calcpack.plan.steps import LookupStep, OptimumStep, RootStep, SeriesStep
 from calcpack.record.identity import step_identity
 from calcpack.solving.program import neighbours
 from calcpack.solving.solution import Solution, printed_freely
 from calcpack.units import print_unit, read_quantity, shown_with_unit
-from calcpack.units.digits import number_text
+from calcpack.units.digits import decimals_for, number_text
 
 
 def step_entries(solution: Solution, identities: dict[str, str]) -> list[dict[str, Any]]:
@@ -53,7 +53,7 @@ def formula_text(step: LaidStep) -> str:
 def numbers_text(solution: Solution, step: LaidStep) -> str:
     """The formula with its operands as printed; for a choice, of the branch that held."""
     match step.step:
-        case SeriesStep() | RootStep():
+        case SeriesStep() | RootStep() | OptimumStep():
             return ""
     if step.kind == "choice":
         held = solution.program.held[step.symbol]
@@ -67,8 +67,8 @@ def _formulas(solution: Solution, step: LaidStep) -> list[str]:
     match step.step:
         case LookupStep(points=points):
             texts += [f"{x}: {y}" for x, y in points]
-        case RootStep():
-            # A root hangs on all that its body reads; the body's own symbols stand by their formulas.
+        case RootStep() | OptimumStep():
+            # An unknown hangs on all that its body reads; the body's own symbols stand by their formulas.
             texts += [to_text(one.tree) for one in root_body(solution, step.symbol) if one.tree is not None]
     return texts
 
@@ -112,6 +112,25 @@ def _root(solution: Solution, step: LaidStep) -> dict[str, Any]:
             "high_formula": to_text(step.trees["high"]), "residual": printed_freely(left, equation_unit, 2),
             "residual_value": float(left), "iterations": root.evaluations,
             "closed_by": [solution.step(name).id for name in closing]}
+
+
+def _optimum(solution: Solution, step: LaidStep) -> dict[str, Any]:
+    """The objective, the bounds used, the optimum and a curve around it, all as printed."""
+    found = solution.program.optima[step.symbol]
+    objective_unit = print_unit(_equation_dimension(solution, step), solution.system)
+    decimals = max(0, decimals_for(objective_unit.from_si(found.objective), 6))
+    digits = solution.printing.decimals[step.symbol]
+
+    def pair(x: float, y: float) -> dict[str, Any]:
+        return {"x": number_text(step.unit.from_si(x), max(0, digits)), "x_value": x,
+                "y": number_text(objective_unit.from_si(y), decimals), "y_value": y}
+    return {"unknown": step.symbol, "objective": to_text(step.tree), "sense": step.step.sense,
+            "low": _end(step, found.low, digits), "high": _end(step, found.high, digits),
+            "low_formula": to_text(step.trees["low"]), "high_formula": to_text(step.trees["high"]),
+            "iterations": found.evaluations, "objective_unit": objective_unit.symbol,
+            "optimum": pair(found.value, found.objective), "curve": [pair(x, y) for x, y in found.curve],
+            "closed_by": [solution.step(name).id for name in symbols_of(step.tree)
+                          if not _given_before(solution, step, name)]}
 
 
 def _end(step: LaidStep, value: float, decimals: int) -> str:
@@ -172,4 +191,4 @@ def _cells(solution: Solution, step: LaidStep, row: int, values: list[float]) ->
 
 
 _DETAILS: Mapping[str, Callable[[Solution, LaidStep], dict[str, Any]]] = {
-    "root": _root, "choice": _choice, "lookup": _lookup, "series": _table}
+    "root": _root, "optimum": _optimum, "choice": _choice, "lookup": _lookup, "series": _table}

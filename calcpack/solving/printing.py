@@ -110,7 +110,7 @@ class Printing:
             for step in reversed(self.plan.steps):
                 if step.kind == "series":
                     self._raise_series(step)
-                elif step.kind != "root":
+                elif step.kind not in ("root", "optimum"):
                     self._raise(step)
 
     def _level_pairs(self) -> None:

@@ -15,8 +15,8 @@ from calcpack.formula.evaluate import Compiled, compiled
 from calcpack.formula.text import to_text
 from calcpack.formula.tree import Node, PropertyCall, symbols_of
 from calcpack.plan.laid import LaidDemand, LaidPlan, LaidStep
-from calcpack.plan.steps import Closing, LookupStep, RootStep, SeriesStep
-from calcpack.solving.roots import Root, find_root
+from calcpack.plan.steps import Closing, LookupStep, OptimumStep, RootStep, SeriesStep
+from calcpack.solving.roots import Optimum, Root, find_optimum, find_root
 from calcpack.units import read_quantity
 
 Instruction = tuple[int, Callable[[list[Any]], Any]]
@@ -27,8 +27,8 @@ class Program:
 
     Attributes
     ----------
-    roots : dict of str to Root
-        Of the last run, each root's bracket and count of evaluations.
+    roots, optima : dict of str to Root, Optimum
+        Of the last run, each unknown's bracket and count of evaluations.
     tables : dict of str to list of list of float
         Of the last run, the rows of each series.
     held : dict of str to int
@@ -42,6 +42,7 @@ class Program:
         self.slots = {name: index for index, name in enumerate(dict.fromkeys(names))}
         self.step_at = {self.slots[step.symbol]: step for step in plan.steps}
         self.roots: dict[str, Root] = {}
+        self.optima: dict[str, Optimum] = {}
         self.tables: dict[str, list[list[float]]] = {}
         self.held: dict[str, int] = {}
         self.functions: dict[str, Callable[[list[Any]], Any]] = {}
@@ -97,9 +98,9 @@ class Program:
                 block.append((self.spare, self._demand(item)))
                 index += 1
                 continue
-            if isinstance(item.step, RootStep):
+            if isinstance(item.step, (RootStep, OptimumStep)):
                 body, index = self._block(items, index + 1, item.symbol)
-                function = self._root(item, body)
+                function = self._unknown(item, body)
             else:
                 function = self._function(item)
             self.functions[item.symbol] = function
@@ -107,28 +108,35 @@ class Program:
             index += 1
         return block, index
 
-    def _root(self, step: LaidStep, body: list[Instruction]) -> Callable[[list[Any]], float]:
+    def _unknown(self, step: LaidStep, body: list[Instruction]) -> Callable[[list[Any]], float]:
+        """A root or an optimum: trial values run the body, then the equation or objective is read."""
         slot = self.slots[step.symbol]
         equation = compiled(step.tree, self.slots)
         low, high = (compiled(step.trees[name], self.slots) for name in ("low", "high"))
         self.bodies[step.symbol] = (body, equation)
 
         def solve(values: list[Any]) -> float:
-            def residual(trial: float) -> float:
+            def at(trial: float) -> float:
                 values[slot] = trial
                 self._run(body, values)
                 found = equation(values)
                 if isinstance(found, complex) or not math.isfinite(found):
                     raise NoAnswerError(Fault("the equation has no real value here"))
                 return found
-            root = find_root(residual, low(values), high(values))
-            self.roots[step.symbol] = root
-            residual(root.value)
-            return root.value
+            solution = self._found(step, at, low(values), high(values))
+            at(solution)
+            return solution
         return solve
 
+    def _found(self, step: LaidStep, at: Callable[[float], float], low: float, high: float) -> float:
+        if isinstance(step.step, RootStep):
+            self.roots[step.symbol] = root = find_root(at, low, high)
+            return root.value
+        self.optima[step.symbol] = optimum = find_optimum(at, low, high, greatest=step.step.sense == "greatest")
+        return optimum.value
+
     def residual_at(self, symbol: str, trial: float, values: Mapping[str, float]) -> float:
-        """The root equation's value with ``trial`` for the unknown and its body run again [SI]."""
+        """A root's equation, or an optimum's objective, with ``trial`` for the unknown and its body run again [SI]."""
         body, equation = self.bodies[symbol]
         listed = [*(values[name] for name in self.slots), 0.0]
         listed[self.slots[symbol]] = trial

@@ -14,6 +14,9 @@ from calcpack.errors import Fault, NoAnswerError, RootError
 RELATIVE = 1e-11
 """Width to which a root is found, relative to the bracket."""
 
+OPTIMUM_WIDTH = 1e-7
+"""Width to which an optimum is found: the objective is flat there, and finer would be noise."""
+
 _INWARDS = (0.0, 1 / 128, 1 / 64, 1 / 32, 1 / 16, 1 / 8, 1 / 4, 3 / 8, 1 / 2)
 _SCAN = 16
 
@@ -50,6 +53,52 @@ def find_root(residual: Callable[[float], float], low: float, high: float) -> Ro
     solution, report = brentq(residual, a, b, xtol=RELATIVE * max(abs(a), abs(b)), rtol=1e-13, maxiter=200,
                               full_output=True)
     return Root(float(solution), a, b, report.function_calls)
+
+
+@dataclass(frozen=True, slots=True)
+class Optimum:
+    """An optimum [SI], the objective there, the bounds used, evaluations, and a curve of (value, objective)."""
+
+    value: float
+    objective: float
+    low: float
+    high: float
+    evaluations: int
+    curve: tuple[tuple[float, float], ...]
+
+
+CURVE = 8
+"""Steps of the curve that is printed around an optimum."""
+
+
+def find_optimum(objective: Callable[[float], float], low: float, high: float, *, greatest: bool) -> Optimum:
+    """Where ``objective`` is greatest (or least) between ``low`` and ``high``.
+
+    The objective is taken to have one hump; the curve of equal steps over the
+    bounds is searched first, so that an optimum at a bound is found as well.
+
+    Raises
+    ------
+    RootError
+        Where the bounds are empty; a NoAnswerError of the objective where no
+        point of the curve can be evaluated.
+    """
+    from scipy.optimize import minimize_scalar
+    if not (math.isfinite(low) and math.isfinite(high) and low < high):
+        raise RootError(Fault("the bounds of the optimum are empty", found=f"from {low:.6g} to {high:.6g} (SI)"))
+    sign = -1.0 if greatest else 1.0
+    a = _usable_end(objective, low, high)[0]
+    b = _usable_end(objective, high, low)[0]
+    curve = tuple((x, objective(x)) for x in (a + (b - a) * i / CURVE for i in range(CURVE + 1)))
+    best = min(range(CURVE + 1), key=lambda i: sign * curve[i][1])
+    left, right = curve[max(0, best - 1)][0], curve[min(CURVE, best + 1)][0]
+    found = minimize_scalar(lambda x: sign * objective(x), bounds=(left, right), method="bounded",
+                            options={"xatol": OPTIMUM_WIDTH * max(abs(a), abs(b))})
+    value, at = float(found.x), sign * float(found.fun)
+    if sign * curve[best][1] < sign * at:
+        # The optimum lies at a bound, which the bounded search approaches but does not touch.
+        value, at = curve[best]
+    return Optimum(value, at, a, b, int(found.nfev) + CURVE + 3, curve)
 
 
 def _usable_end(residual: Callable[[float], float], end: float, other: float) -> tuple[float, float, str | None]:
