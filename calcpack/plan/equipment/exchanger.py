@@ -117,7 +117,9 @@ def _boundary_differences(section: Section, it: Exchanger) -> list[str]:
     result = []
     for index, (T_stream, T_fluid) in enumerate(zip(temperatures, fluid, strict=True)):
         where = "cold end" if index == 0 else f"warm end of {it.zones[index - 1].name}"
-        result.append(section.formula(f"dT_{it.tag}{index}", it.difference(T_stream, T_fluid),
+        # Named by the zone, so that another zone before it does not rename it at the next revision.
+        symbol = f"dT_{it.tag}_cold" if index == 0 else f"dT_{it.zones[index - 1].tag}"
+        result.append(section.formula(symbol, it.difference(T_stream, T_fluid),
                                       f"Temperature difference, {where}", "K"))
     return result
 

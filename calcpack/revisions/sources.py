@@ -1,0 +1,120 @@
+"""What a comparison is asked to read to a record: a spec, a record, an issued PDF, or one of them in git."""
+from __future__ import annotations
+
+import io
+from dataclasses import dataclass
+from pathlib import Path, PurePosixPath
+
+from calcpack.errors import CommandError, Fault, nearest
+from calcpack.record import Record, read_record
+
+SPECS = (".yaml", ".yml")
+RECORDS = (".json",)
+ISSUED = (".pdf",)
+
+
+@dataclass(frozen=True, slots=True)
+class Found:
+    """The bytes that were found, the path they belong to, and the name that messages give them."""
+
+    content: bytes
+    path: Path
+    name: str
+
+
+def load(text: str, base: Path | None = None) -> Record:
+    """The record of what ``text`` names: a path, or ``REV:path`` in git.
+
+    Parameters
+    ----------
+    text : str
+        A spec (solved now), a record, or an issued PDF that carries its
+        record. A path that exists is a path, whatever stands in its name.
+    base : Path, optional
+        The folder that relative paths start from; the current one by default.
+
+    Raises
+    ------
+    CommandError
+        For what is not there or holds no record.
+    CalcpackError
+        For a spec that is wrong or has no answer.
+    MissingPartError
+        Where git is needed and not installed.
+    """
+    folder = base if base is not None else Path.cwd()
+    found = _find(text, folder)
+    suffix = found.path.suffix.lower()
+    if suffix in SPECS:
+        return _solved(found)
+    if suffix in RECORDS:
+        return _record(found.content, found.name)
+    if suffix in ISSUED:
+        return _carried(found)
+    raise CommandError(Fault(f"{found.name} is no spec, record or issued PDF by its name",
+                             expected="a file in " + ", ".join((*SPECS, *RECORDS, *ISSUED))))
+
+
+def _find(text: str, folder: Path) -> Found:
+    if "\0" in text:
+        raise CommandError(Fault("a path has no character that cannot be seen", found=repr(text)))
+    path = folder / text
+    if path.is_file():
+        return Found(_content(path), path, text)
+    revision, colon, inside = text.partition(":")
+    if not colon or path.exists():
+        raise CommandError(Fault(f"{text!r} is not a file" if path.exists() else f"there is no file {text!r}",
+                                 expected="a spec, a record, an issued PDF, or REV:path in git",
+                                 hint=_alike(path)))
+    if not inside:
+        raise CommandError(Fault(f"{text!r} names a revision and no file",
+                                 expected="REV:path, such as v1.0:specs/a.yaml"))
+    from calcpack.revisions.git import repository
+    return Found(repository(folder).content(revision, inside), folder / PurePosixPath(inside), text)
+
+
+def _content(path: Path) -> bytes:
+    try:
+        return path.read_bytes()
+    except OSError as error:
+        raise CommandError(Fault(f"cannot read {path}", detail=str(error))) from None
+
+
+def _alike(path: Path) -> str | None:
+    if not path.parent.is_dir():
+        return f"there is no folder {path.parent}"
+    return nearest(path.name, (one.name for one in path.parent.iterdir() if one.suffix in (*SPECS, *RECORDS, *ISSUED)))
+
+
+def _solved(found: Found) -> Record:
+    """A spec's record, from the bytes that were found, so that its hash is of the same bytes."""
+    from calcpack.pipeline import solve_spec
+    from calcpack.spec.source import source_of_bytes
+    source_of_bytes(found.content, found.name)       # refuses what is no text, with its place
+    return solve_spec(found.path, text=found.content.decode("utf-8"), name=found.name)
+
+
+def _record(content: bytes, name: str) -> Record:
+    try:
+        text = content.decode("utf-8")
+    except UnicodeDecodeError as error:
+        raise CommandError(Fault(f"{name} is not a record", expected="JSON in UTF-8", detail=str(error))) from None
+    return read_record(Path(name), text)
+
+
+def _carried(found: Found) -> Record:
+    """The record that an issued PDF carries as its attached file ``*.json``."""
+    import pikepdf
+    try:
+        with pikepdf.open(io.BytesIO(found.content)) as document:
+            attached = {name: spec.get_file().read_bytes() for name, spec in document.attachments.items()
+                        if name.lower().endswith(RECORDS)}
+    except pikepdf.PdfError as error:
+        raise CommandError(Fault(f"{found.name} cannot be read as a PDF", detail=str(error))) from None
+    if len(attached) != 1:
+        carries = "several files that may be its record" if attached else "no record"
+        raise CommandError(Fault(f"{found.name} carries {carries}", found=", ".join(sorted(attached)) or None,
+                                 expected="a PDF that 'calcpack issue' wrote",
+                                 hint="name the record itself, if you have it"))
+    [(name, content)] = attached.items()
+    return _record(content, f"{found.name}: {name}")
