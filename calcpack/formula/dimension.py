@@ -48,6 +48,9 @@ def measure(node: Node, lookup: Lookup, text: str) -> Measure:
     """
     result = _Prover(lookup, text).read(node)
     if result.dimension == TEMPERATURE and result.level not in (None, 0.0, 1.0):
+        if not (isinstance(node, Binary) and node.op in "+-"):
+            # A multiple of a level, such as 0.7 T_c, is an absolute temperature and nothing more is known.
+            return Measure(TEMPERATURE, None)
         raise FormulaError(formula_fault(
             text, "this adds temperature levels to something that is neither a level nor a difference",
             node.at, hint="a mean of levels divides their sum by their number"))

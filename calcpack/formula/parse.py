@@ -2,7 +2,8 @@
 
 ::
 
-    condition  = comparison { ("and" | "or") comparison }
+    condition  = all { "or" all }
+    all        = comparison { "and" comparison }
     comparison = sum ( "<" | "<=" | ">" | ">=" ) sum
     sum        = term { ("+" | "-") term }
     term       = factor { ("*" | "/") factor }
@@ -25,6 +26,7 @@ from calcpack.formula.tree import (
 
 MAX_DEPTH = 40
 MAX_EXPONENT = 12.0
+LEVEL_UNITS = ("°C", "°F")
 COMPARISONS = ("<", "<=", ">", ">=")
 
 
@@ -44,7 +46,7 @@ def parse(text: str) -> Node:
 
 
 def parse_condition(text: str) -> Node:
-    """The tree of a condition: comparisons joined by ``and`` and ``or``."""
+    """The tree of a condition: comparisons joined by ``and`` and ``or``, of which ``and`` binds tighter."""
     reader = _Reader(text)
     node = reader.condition(0)
     reader.finish()
@@ -92,10 +94,17 @@ class _Reader:
         return self.take()
 
     def condition(self, depth: int) -> Node:
-        node = self.comparison(depth)
-        while self.token.text in ("and", "or"):
+        node = self.all_of(depth)
+        while self.token.text == "or":
             word = self.take()
-            node = Logic(word.text, node, self.comparison(depth + 1), word.at)
+            node = Logic("or", node, self.all_of(depth), word.at)
+        return node
+
+    def all_of(self, depth: int) -> Node:
+        node = self.comparison(depth)
+        while self.token.text == "and":
+            word = self.take()
+            node = Logic("and", node, self.comparison(depth), word.at)
         return node
 
     def comparison(self, depth: int) -> Node:
@@ -125,6 +134,10 @@ class _Reader:
                             hint="split it into steps that can be checked one by one")
         if self.token.text == "-":
             minus = self.take()
+            if self.token.unit in LEVEL_UNITS:
+                # -1 degC is a level below zero, not the negative of a level.
+                level = self.take()
+                return Quantity(-float(level.text), f"-{level.text}", level.unit, minus.at)
             return Negative(self.factor(depth + 1), minus.at)
         return self.power(depth)
 

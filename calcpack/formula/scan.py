@@ -7,12 +7,14 @@ from dataclasses import dataclass
 from calcpack.errors import Fault, FormulaError, Place
 
 MAX_LENGTH = 600
+MAX_TOKENS = 250
 
-_NUMBER = re.compile(r"(?:\d+(?:\.\d+)?|\.\d+)(?:[eE][+-]?\d{1,3})?")
+# Digits are those of ASCII: \d would take the digits of any script.
+_NUMBER = re.compile(r"(?:[0-9]+(?:\.[0-9]+)?|\.[0-9]+)(?:[eE][+-]?[0-9]{1,3})?")
 _NAME = re.compile(r"[A-Za-z][A-Za-z0-9]*(?:_[A-Za-z0-9]+)*")
 # Designations of fluids stand in printed numbers, first in a property's bracket.
 _FLUID = re.compile(r"(?<=\()«([^«»]{1,80})»")
-_UNIT = re.compile(r" (?!and\b|or\b)([A-Za-z°µΔ%][A-Za-z0-9°µΔ%²³/^·*.()\[\]-]*)")
+_UNIT = re.compile(r" (?!and\b|or\b)((?:1/)?[A-Za-z°µΔ%][A-Za-z0-9°µΔ%²³/^·*.()\[\]-]*)")
 _SIGNS = ("<=", ">=", "<", ">", "+", "-", "*", "/", "^", "(", ")", ",", "=")
 
 
@@ -33,7 +35,7 @@ def scan(text: str) -> list[Token]:
     ------
     FormulaError
         For a sign that is not in the language, a unit that is not known, or
-        a text longer than 600 characters.
+        a text longer than 600 characters or of more than 250 tokens.
     """
     if len(text) > MAX_LENGTH:
         raise _fault(f"the formula is longer than {MAX_LENGTH} characters", 0,
@@ -46,6 +48,9 @@ def scan(text: str) -> list[Token]:
             continue
         token, at = _next(text, at)
         tokens.append(token)
+        if len(tokens) > MAX_TOKENS:
+            raise _fault(f"the formula has more than {MAX_TOKENS} parts", token.at, len(token.text),
+                         hint="split it into steps that can be checked one by one")
     return [*tokens, Token("end", "", len(text))]
 
 

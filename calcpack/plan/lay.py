@@ -7,7 +7,7 @@ from dataclasses import replace
 from calcpack.errors import CalcpackError, Fault, FormulaError, nearest
 from calcpack.formula.dimension import TEMPERATURE, Measure, measure
 from calcpack.formula.parse import formula_fault, parse, parse_condition
-from calcpack.formula.tree import Node, PropertyCall, Symbol, symbols_of
+from calcpack.formula.tree import FUNCTIONS, Node, PropertyCall, Symbol, symbols_of
 from calcpack.plan.laid import LaidColumn, LaidDemand, LaidInput, LaidPlan, LaidStep
 from calcpack.plan.outputs import PROPERTIES, measure_of_property, measure_of_unit
 from calcpack.plan.plan import Plan
@@ -159,7 +159,7 @@ class _Layer:
         found = measure_of_property(call.output)
         if found is None:
             raise FormulaError(formula_fault(text, f"there is no property or function {call.output!r}", call.at,
-                                             len(call.output), hint=nearest(call.output, PROPERTIES)))
+                                             len(call.output), hint=nearest(call.output, (*PROPERTIES, *FUNCTIONS))))
         if call.fluid not in self.plan.fluids:
             known = ", ".join(sorted(self.plan.fluids)) or "none"
             raise FormulaError(formula_fault(text, f"{call.fluid!r} is not a fluid of this sheet", call.at,
@@ -181,8 +181,8 @@ class _Layer:
         self.plan.fluids[call.fluid].reader(call.output, tuple(key for key, _ in call.given))
 
     def root(self, step: RootStep | OptimumStep, number: str) -> LaidStep:
-        found = measure_of_unit(step.unit or "")
         trees = {"low": parse(step.low), "high": parse(step.high)}
+        found = measure_of_unit(step.unit) if step.unit is not None else self.measured(trees["low"], step.low)
         for name, tree in trees.items():
             end = self.measured(tree, getattr(step, name))
             if end.dimension != found.dimension:

@@ -61,20 +61,27 @@ class _Binder:
         self.faults: list[Fault] = []
         self.readings: dict[str, Reading] = {}
         self.written: dict[str, str] = {}
+        # Whether the options say which plan is meant; else nothing that only hangs on the plan is blamed.
+        self.shaped = True
 
     def bind(self) -> Bound | None:
         method = self.method()
         if method is None:
             return None
         options = self.options(method)
+        self.shaped = not self.faults
         fluids = self.fluids(method, options)
         plan = Plan(options, fluids)
         count = len(self.faults)
         self.guarded(lambda: method.lay(plan), ("case", "options"))
+        if not self.shaped:
+            # A default in the place of a faulty option may contradict the others.
+            del self.faults[count:]
+        self.shaped = self.shaped and len(self.faults) == count
         inputs = self.inputs(plan.needs)
-        self.guarded(lambda: add_own_steps(plan, self.spec), ("steps",))
-        if len(self.faults) > count and not plan.items:
+        if not self.shaped:
             return None
+        self.guarded(lambda: add_own_steps(plan, self.spec), ("steps",))
         laid, faults = lay(plan, inputs, self.spec.sheet.units,
                            lambda fault, path: self.spec.located(fault, *path), self.spec.dropped)
         # A method's steps cannot be proved where an option, a fluid or an input of its own is at fault.
@@ -108,9 +115,9 @@ class _Binder:
                 self.fault(f"{method.name} has no option {name!r}", ("case", "options", name), key=True,
                            expected="one of " + ", ".join(names) if names else "no options",
                            hint=nearest(name, names))
-            elif value not in option.values:
+            elif not option.accepts(value):
                 self.fault(f"option {name} cannot be {value!r}", ("case", "options", name),
-                           expected="one of " + ", ".join(option.values), hint=nearest(value, option.values))
+                           expected=option.expected, hint=nearest(value, option.values))
             else:
                 chosen[name] = value
         return method.complete(chosen)
@@ -120,7 +127,7 @@ class _Binder:
         wanted = {role.name: role for role in method.roles(options)}
         opened: dict[str, Any] = {}
         for name, definition in self.spec.case.fluids.items():
-            if wanted and name not in wanted and not self.spec.steps:
+            if self.shaped and wanted and name not in wanted and not self.spec.steps:
                 self.fault(f"{method.name} has no use for a fluid {name!r} with these options",
                            ("case", "fluids", name), key=True, expected="one of " + ", ".join(wanted),
                            hint=nearest(name, wanted))
@@ -130,7 +137,7 @@ class _Binder:
             except CalcpackError as error:
                 self.faults += [fault.at(self.spec.place("case", "fluids", name)) for fault in error.faults]
         for name, role in wanted.items():
-            if name not in self.spec.case.fluids:
+            if self.shaped and name not in self.spec.case.fluids:
                 self.fault(f"the fluid {name!r} is missing", ("case",), key=True,
                            expected=f"case.fluids.{name}: {role.title.lower()}, such as {role.typical}")
         return opened
@@ -139,16 +146,17 @@ class _Binder:
         laid: dict[str, LaidInput] = {}
         given = self.spec.case.inputs
         for symbol in self.overrides:
-            if symbol not in given and symbol not in needs:
+            if self.shaped and symbol not in given and symbol not in needs:
                 self.faults.append(Fault(f"--set {symbol}: there is no input of that symbol",
                                          hint=nearest(symbol, [*given, *needs])))
         for symbol, need in needs.items():
             if symbol in self.spec.dropped:
                 continue
             if symbol not in given and symbol not in self.overrides and need.default is None:
-                self.fault(f"the input {symbol!r} is missing", ("case",), key=True,
-                           expected=f"case.inputs.{symbol}: {need.title[:1].lower()}{need.title[1:]}, "
-                                    f"such as {need.typical!r}")
+                if self.shaped:
+                    self.fault(f"the input {symbol!r} is missing", ("case",), key=True,
+                               expected=f"case.inputs.{symbol}: {need.title[:1].lower()}{need.title[1:]}, "
+                                        f"such as {need.typical!r}")
                 continue
             reading = self.reading(symbol, need)
             if reading is not None:

@@ -112,6 +112,8 @@ class Printing:
                     self._raise_series(step)
                 elif step.kind not in ("root", "optimum"):
                     self._raise(step)
+        for step in checked:
+            self._coarsen(step)
 
     def _level_pairs(self) -> None:
         """Two values that must agree are printed equally fine, so that the eye can compare them."""
@@ -125,6 +127,12 @@ class Printing:
         if kind is not None and kind.decimals is not None:
             return
         least = decimals_for(self._magnitude(step.symbol), LEAST_SIGNIFICANT)
+        while self.decimals[step.symbol] > least and not self._redoable(step):
+            self.decimals[step.symbol] -= 1
+
+    def _coarsen(self, step: LaidStep) -> None:
+        """Where operands cannot be printed finely enough, as after long chains of differences, print less."""
+        least = decimals_for(self._magnitude(step.symbol), 1)
         while self.decimals[step.symbol] > least and not self._redoable(step):
             self.decimals[step.symbol] -= 1
 

@@ -136,12 +136,19 @@ class Program:
         return optimum.value
 
     def residual_at(self, symbol: str, trial: float, values: Mapping[str, float]) -> float:
-        """A root's equation, or an optimum's objective, with ``trial`` for the unknown and its body run again [SI]."""
+        """A root's equation, or an optimum's objective, with ``trial`` for the unknown and its body run again [SI].
+
+        What the last full run found (roots, optima, tables, branches) stays as it was.
+        """
         body, equation = self.bodies[symbol]
         listed = [*(values[name] for name in self.slots), 0.0]
         listed[self.slots[symbol]] = trial
-        self._run(body, listed)
-        return equation(listed)
+        kept = dict(self.roots), dict(self.optima), dict(self.tables), dict(self.held)
+        try:
+            self._run(body, listed)
+            return equation(listed)
+        finally:
+            self.roots, self.optima, self.tables, self.held = kept
 
     def _function(self, step: LaidStep) -> Callable[[list[Any]], Any]:
         match step.step:

@@ -47,6 +47,9 @@ def find_root(residual: Callable[[float], float], low: float, high: float) -> Ro
     a, at_a, trouble_a = _usable_end(residual, low, high)
     b, at_b, trouble_b = _usable_end(residual, high, low)
     if at_a * at_b > 0.0:
+        if a >= b:
+            raise RootError(Fault("the equation can be evaluated nowhere but in the middle of its bracket",
+                                  found=f"from {low:.6g} to {high:.6g} (SI)", hint=trouble_a or trouble_b))
         a, at_a, b, at_b = _scan(residual, (a, at_a), (b, at_b), trouble_a or trouble_b)
     if at_a == 0.0 or at_b == 0.0:
         return Root(a if at_a == 0.0 else b, a, b, 2)
