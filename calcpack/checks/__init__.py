@@ -1,18 +1,37 @@
-"""What is checked of a solution: balances, bounds, re-check by hand, limits, cautions.
+"""What is checked of a solution: balances, bounds, ranges, a second source, re-check by hand, limits, cautions.
 
 Each check reads values and adds findings; a result that breaks a law is an
-error, not a finding.
+error, a limit that fails is a finding, and a caution never stops anything.
 """
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
 
+from calcpack.checks.bounds import bounds, pinches, two_ways
+from calcpack.checks.cautions import cautions
+from calcpack.checks.closures import energy_balances, entropy_balances, mass_balances
+from calcpack.checks.hand import redone_by_hand
+from calcpack.checks.limits import limits
+from calcpack.checks.ranges import critical_margins, fluid_ranges
+from calcpack.checks.second_source import second_source
+
 if TYPE_CHECKING:
     from calcpack.record import Record
-    from calcpack.solve.solution import Solution
+    from calcpack.solving.solution import Solution
 
-__all__ = ["Findings", "examine"]
+__all__ = ["CHECKS", "Findings", "examine"]
+
+Check = Callable[["Solution", "Record"], tuple[dict[str, Any], ...]]
+
+CHECKS: tuple[Check, ...] = (
+    mass_balances, energy_balances, entropy_balances, bounds, two_ways, pinches,
+    fluid_ranges, critical_margins, second_source, redone_by_hand)
+"""The checks in the order of print; each gives entries ``{id, group, text, value, allowed, status, detail}``.
+
+``status`` is 'ok', 'fails' or 'not evaluated'.
+"""
 
 
 @dataclass(frozen=True, slots=True)
@@ -25,5 +44,12 @@ class Findings:
 
 
 def examine(solution: Solution, record: Record) -> Findings:
-    """All findings of a solution and of the record it gave."""
-    return Findings((), (), ())
+    """All findings of a solution and of the record it gave.
+
+    Raises
+    ------
+    BrokenLawError
+        Where a balance is open, entropy is destroyed or a bound is passed.
+    """
+    checks = tuple(entry for check in CHECKS for entry in check(solution, record))
+    return Findings(limits(solution), checks, cautions(solution))

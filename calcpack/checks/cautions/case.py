@@ -1,0 +1,106 @@
+"""A solution as the cautions see it: the working fluid, its states, the streams, what plays which part."""
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+from typing import Any
+
+from calcpack.errors import CalcpackError
+from calcpack.fluids.gas import IdealGas
+from calcpack.fluids.register import Entry, Fact, fact, find
+from calcpack.plan.facts import StatePoint, StreamLine
+from calcpack.solving.solution import Solution
+
+
+@dataclass(frozen=True, slots=True)
+class Case:
+    """Read-only questions to one solution; values are SI floats, None where the sheet has none."""
+
+    solution: Solution
+
+    @property
+    def working(self) -> Any | None:
+        """The working fluid if it evaporates and condenses, else None: a textbook gas has no vessels to guard."""
+        fluid = self.solution.plan.fluids.get("wf")
+        return fluid if fluid is not None and ("p", "x") in fluid.pairs and self.points else None
+
+    @property
+    def points(self) -> list[StatePoint]:
+        """The numbered states of the working fluid."""
+        return [point for point in self.solution.plan.facts.states if point.fluid == "wf"]
+
+    @property
+    def streams(self) -> list[StreamLine]:
+        """The secondary streams."""
+        return self.solution.plan.facts.streams
+
+    @property
+    def registered(self) -> Entry | None:
+        """The working fluid's entry in the register."""
+        return find(self.working.designation) if self.working is not None else None
+
+    def is_fluid(self, designation: str) -> bool:
+        """Whether the working fluid is the register's ``designation``, under whatever name it was opened."""
+        entry = self.registered
+        return entry is not None and entry.designation == designation
+
+    def part(self, name: str) -> float | None:
+        """The value of the symbol that plays a part, such as 'discharge'."""
+        return self.value(self.solution.plan.facts.roles.get(name))
+
+    def point(self, name: str) -> StatePoint | None:
+        """The state that plays a part, such as 'expander outlet'."""
+        number = self.solution.plan.facts.roles.get(name)
+        return next((point for point in self.points if point.number == number), None)
+
+    def value(self, symbol: str | None) -> float | None:
+        """The value of a symbol, None where the sheet has none."""
+        return self.solution.value(symbol) if symbol is not None and self.solution.has(symbol) else None
+
+    def fluid_of(self, stream: StreamLine) -> Any:
+        """The fluid of a stream."""
+        return self.solution.plan.fluids[stream.role]
+
+    @staticmethod
+    def is_gas(fluid: Any) -> bool:
+        """Whether a fluid is taken as an ideal gas, one component or a mixture."""
+        return isinstance(fluid, IdealGas)
+
+    def of_points(self, quantity: str) -> list[float]:
+        """T or p of all states of the working fluid."""
+        found = (self.value(getattr(point, quantity)) for point in self.points)
+        return [value for value in found if value is not None]
+
+    def of_streams(self, *quantities: str) -> Iterator[float]:
+        """Values of the streams' ends, such as T_in and T_out."""
+        for stream in self.streams:
+            for quantity in quantities:
+                value = self.value(getattr(stream, quantity))
+                if value is not None:
+                    yield value
+
+    def constant(self, name: str) -> float | None:
+        """A constant of the working fluid, such as T_crit; None where its model has none."""
+        fluid = self.working
+        return fluid.reader(name, ())() if fluid is not None and name in fluid.constants else None
+
+    def fact(self, quantity: str) -> Fact | None:
+        """What the register says of the working fluid."""
+        return fact(self.working, quantity) if self.working is not None else None
+
+    def bubble_pressure(self, T: float) -> float | None:
+        """The working fluid's bubble pressure at T; None above its critical point or outside its equation."""
+        try:
+            return self.working.reader("p", ("T", "x"))(T, 0.0)
+        except CalcpackError:
+            return None
+
+    def vapour_share(self, point: StatePoint) -> float | None:
+        """The enthalpy-based vapour fraction of a state; None above the critical pressure."""
+        p, h = self.value(point.p), self.value(point.h)
+        if p is None or h is None:
+            return None
+        try:
+            return self.working.reader("x_eq", ("p", "h"))(p, h)
+        except CalcpackError:
+            return None
