@@ -49,8 +49,10 @@ def _given_heat(plan: Plan) -> None:
 
 
 def _reservoirs(plan: Plan) -> tuple[str, str]:
-    plan.input("T_h", "temperature", "Temperature of the hot reservoir", "350 degC")
-    plan.input("T_c", "temperature", "Temperature of the cold reservoir", "15 degC")
+    hot, cold = {"engine": ("350 degC", "15 degC"), "heat-pump": ("60 degC", "10 degC"),
+                 "refrigerator": ("35 degC", "2 degC")}[plan.options["machine"]]
+    plan.input("T_h", "temperature", "Temperature of the hot reservoir", hot)
+    plan.input("T_c", "temperature", "Temperature of the cold reservoir", cold)
     _given_heat(plan)
     return "T_h", "T_c"
 
@@ -135,6 +137,7 @@ def _dead_state(plan: Plan) -> None:
                     "Specific flow exergy of the source", "kJ/kg",
                     reference="flow exergy without kinetic, potential and chemical parts")
     section.formula("W_dot_rev", "m_dot_source * e_source", "Maximum power", "kW")
+    section.formula("Q_dot_c", "Q_dot_h - W_dot_rev", "Heat given at the dead state", "kW")
     second = plan.section("The same by the entropic mean temperature")
     second.formula("T_m_source", "(h_source_in - h_source_0) / (s_source_in - s_source_0)",
                    "Entropic mean temperature of the heat given up", "degC")
@@ -146,8 +149,8 @@ def _dead_state(plan: Plan) -> None:
 def _real(plan: Plan) -> None:
     """What a real machine reaches of the bound, and the power that it gives away."""
     engine = plan.options["machine"] == "engine"
-    plan.input("W_dot_real", "power", "Power of the real machine", "120 kW" if engine else "160 kW", low="0 kW",
-               low_open=True)
+    typical = {"engine": "120 kW", "heat-pump": "160 kW", "refrigerator": "25 kW"}[plan.options["machine"]]
+    plan.input("W_dot_real", "power", "Power of the real machine", typical, low="0 kW", low_open=True)
     section = plan.section("A real machine against the bound")
     if engine:
         section.formula("eta_real", "W_dot_real / Q_dot_h", "Efficiency of the real machine")

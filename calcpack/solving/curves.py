@@ -86,8 +86,7 @@ def _path(solution: Solution, fluid: Any, path: Path, points: dict[str, StatePoi
     read = [_reader(fluid, quantity, fixed, moving) for quantity in axes]
     first, last = _of(solution, start, moving), _of(solution, end, moving)
     xs, ys = [ends[0][0]], [ends[0][1]]
-    for index in range(1, POINTS):
-        value = first + (last - first) * index / POINTS
+    for value in _values(fluid, fixed, constant, first, last):
         try:
             x, y = (one(constant, value) for one in read)
         except CalcpackError:
@@ -106,6 +105,21 @@ def _gas_path(solution: Solution, path: Path, ends: list[tuple[float, float]],
     exponent = 1.0 if path.along == "T" else solution.value("gamma")
     xs = [x0 + (x1 - x0) * index / POINTS for index in range(POINTS)]
     return [*xs, x1], [*(y0 * (x0 / x) ** exponent for x in xs), y1]
+
+
+def _values(fluid: Any, fixed: str, constant: float, first: float, last: float) -> list[float]:
+    """Even steps between two states; along an isobar also the saturation lines, where the path has corners."""
+    values = [first + (last - first) * index / POINTS for index in range(1, POINTS)]
+    if fixed == "p":
+        for share in (0.0, 1.0):
+            try:
+                corner = fluid.reader("h", ("p", "x"))(constant, share)
+            except CalcpackError:
+                # Above the critical pressure, and for gases, an isobar has no corner.
+                continue
+            if min(first, last) < corner < max(first, last):
+                values.append(corner)
+    return sorted(values, reverse=last < first)
 
 
 def _reader(fluid: Any, quantity: str, fixed: str, moving: str) -> Callable[[float, float], float]:
