@@ -16,16 +16,21 @@ from calcpack.formula.tree import Binary, Number, Quantity
 from calcpack.plan.laid import LaidPlan, LaidStep
 from calcpack.solving.program import Program
 from calcpack.units import Unit, kind_of_unit
-from calcpack.units.digits import decimals_for, number_text
+from calcpack.units.digits import LARGEST_PLAIN, decimals_for, number_text
 
 LEAST_SIGNIFICANT = 4
 MOST_SIGNIFICANT = 9
-EXACT_SIGNIFICANT = 12
+EXACT_SIGNIFICANT = 10
+CONVERTED_SIGNIFICANT = 6
 EXACT = 1e-11
 NOISE = 1e-10
 _TRIES = 24
 WITHIN = 0.95
 """Largest distance of re-done and printed result, in units of the last place; a little below one for safety."""
+
+
+_NOTHING = (NoAnswerError, ArithmeticError, ValueError, TypeError)
+"""What rounding an operand can come to where the exact value had an answer."""
 
 
 class Printing:
@@ -85,21 +90,28 @@ class Printing:
         listed = [*(self.values[symbol] for symbol in self.program.slots), 0.0]
         return [abs(self.program.value_of(part)(listed)) for part in (tree.left, tree.right)]
 
+    def _places(self, name: str, significant: int) -> int:
+        """Decimals for so many significant digits, as far as they can be seen in print."""
+        magnitude = self._magnitude(name)
+        places = decimals_for(magnitude, significant)
+        # A number printed without an exponent has its last place where its last digit stands.
+        return max(0, places) if magnitude < LARGEST_PLAIN else places
+
     def _start(self, name: str) -> int:
         kind = kind_of_unit(self.units[name])
         magnitude = self._magnitude(name)
         if kind is not None and kind.decimals is not None:
             return kind.decimals + (0 if magnitude < 1e6 else -1)
-        return decimals_for(magnitude, kind.significant if kind else 5)
+        return self._places(name, kind.significant if kind else 5)
 
     def _exact(self, name: str) -> int:
-        """The fewest decimals that print an input just as it was given, or nine digits of it."""
+        """The fewest decimals that print an input just as it was given; six digits of one that was converted."""
         number = self.units[name].from_si(self.values[name])
         most = max(0, decimals_for(number, EXACT_SIGNIFICANT)) if number else 0
         for decimals in range(0, most + 1):
             if math.isclose(float(number_text(number, decimals)), number, rel_tol=EXACT, abs_tol=0.0):
                 return decimals
-        return max(0, decimals_for(number, MOST_SIGNIFICANT))
+        return max(0, decimals_for(number, CONVERTED_SIGNIFICANT))
 
     def _settle(self) -> None:
         checked = [step for step in self.plan.steps if step.kind in ("formula", "property", "choice", "lookup")]
@@ -126,13 +138,13 @@ class Printing:
         kind = kind_of_unit(step.unit)
         if kind is not None and kind.decimals is not None:
             return
-        least = decimals_for(self._magnitude(step.symbol), LEAST_SIGNIFICANT)
+        least = self._places(step.symbol, LEAST_SIGNIFICANT)
         while self.decimals[step.symbol] > least and not self._redoable(step):
             self.decimals[step.symbol] -= 1
 
     def _coarsen(self, step: LaidStep) -> None:
         """Where operands cannot be printed finely enough, as after long chains of differences, print less."""
-        least = decimals_for(self._magnitude(step.symbol), 1)
+        least = self._places(step.symbol, 1)
         while self.decimals[step.symbol] > least and not self._redoable(step):
             self.decimals[step.symbol] -= 1
 
@@ -159,7 +171,7 @@ class Printing:
     def _can_grow(self, name: str) -> bool:
         if name in self.plan.inputs and math.isclose(self.printed(name), self.values[name], rel_tol=EXACT):
             return False
-        return self.decimals[name] < decimals_for(self._magnitude(name), MOST_SIGNIFICANT)
+        return self.decimals[name] < self._places(name, MOST_SIGNIFICANT)
 
     def _moved(self, step: LaidStep, name: str) -> float:
         return abs(self._evaluate(step, {name}) - self.values[step.symbol])
@@ -172,8 +184,8 @@ class Printing:
             listed[slots[name]] = self.printed(name)
         try:
             return self.program.functions[step.symbol](listed)
-        except NoAnswerError:
-            # A printed operand just across a saturation line: more places will bring it back.
+        except _NOTHING:
+            # A printed operand just across a saturation line, or equal to another: more places will bring it back.
             return math.inf
 
     def _raise_series(self, step: LaidStep) -> None:
@@ -236,7 +248,7 @@ class Printing:
             listed[slots[name]] = self.printed(name, values[name])
         try:
             return self.program.value_of(tree)(listed)
-        except NoAnswerError:
+        except _NOTHING:
             return math.inf
 
 
