@@ -85,13 +85,17 @@ def _compile(node: Node, slots: Mapping[str, int], functions: Mapping[str, Any])
 
 
 def _binary(node: Binary | Compare, slots: Mapping[str, int], functions: Mapping[str, Any]) -> Compiled:
-    """The two commonest shapes, symbol with symbol and deeper, each with one call less."""
+    """An operand that is a symbol is read from its slot, with one call less."""
     apply = _OPERATORS[node.op]
-    left, right = node.left, node.right
-    if isinstance(left, Symbol) and isinstance(right, Symbol) and not {left.name, right.name} & CONSTANTS.keys():
-        i, j = slots[left.name], slots[right.name]
+    i, j = (slots[part.name] if isinstance(part, Symbol) and part.name not in CONSTANTS else None
+            for part in (node.left, node.right))
+    if i is not None and j is not None:
         return lambda v: apply(v[i], v[j])
-    a, b = _compile(left, slots, functions), _compile(right, slots, functions)
+    a, b = _compile(node.left, slots, functions), _compile(node.right, slots, functions)
+    if i is not None:
+        return lambda v: apply(v[i], b(v))
+    if j is not None:
+        return lambda v: apply(a(v), v[j])
     return lambda v: apply(a(v), b(v))
 
 

@@ -71,7 +71,9 @@ def times(left: Node, right: Node, *, numeric: bool) -> str:
     if any(isinstance(edge, Symbol) and is_word(edge.name)
            for edge in (_edge(left, first=False), _edge(right, first=True))):
         return TIMES
-    return "" if is_sum(right) and not is_sum(left) else THIN
+    # The last letter of a subscript, an f above all, would touch the bracket.
+    subscripted = isinstance(_edge(left, first=False), Symbol) and "_" in _edge(left, first=False).name.replace("_dot", "")
+    return "" if is_sum(right) and not is_sum(left) and not subscripted else THIN
 
 
 def is_numeric(node: Node) -> bool:

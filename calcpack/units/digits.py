@@ -2,12 +2,15 @@
 from __future__ import annotations
 
 import math
-from decimal import ROUND_HALF_EVEN, Decimal
+from decimal import ROUND_HALF_EVEN, Context, Decimal
 
 from calcpack.units.unit import Unit
 
-SMALLEST_PLAIN = 1e-4
-LARGEST_PLAIN = 1e7
+SMALLEST_PLAIN = Decimal("1e-4")
+LARGEST_PLAIN = Decimal("1e7")
+
+# Wide enough for the greatest float with all its places.
+_WIDE = Context(prec=400, rounding=ROUND_HALF_EVEN)
 
 
 def decimals_for(value: float, significant: int) -> int:
@@ -29,14 +32,15 @@ def shown(value: float, unit: Unit, decimals: int) -> str:
 def number_text(number: float, decimals: int) -> str:
     """``number`` rounded to ``decimals``; zero is never negative."""
     exact = Decimal(repr(float(number)))
-    rounded = exact.quantize(Decimal(1).scaleb(-decimals), rounding=ROUND_HALF_EVEN)
+    rounded = exact.quantize(Decimal(1).scaleb(-decimals), context=_WIDE)
     if rounded == 0:
         return format(abs(rounded), "f") if 0 <= decimals <= 8 else "0"
     if SMALLEST_PLAIN <= abs(rounded) < LARGEST_PLAIN:
         return format(rounded, "f") if decimals >= 0 else format(rounded.to_integral_value(), "f")
     exponent = rounded.adjusted()
-    mantissa = rounded.scaleb(-exponent)
-    return f"{format(mantissa.quantize(Decimal(1).scaleb(-max(0, decimals + exponent))), 'f')}e{exponent}"
+    mantissa = rounded.scaleb(-exponent, context=_WIDE)
+    places = Decimal(1).scaleb(-max(0, decimals + exponent))
+    return f"{format(mantissa.quantize(places, context=_WIDE), 'f')}e{exponent}"
 
 
 def shown_with_unit(number: str, unit: Unit | str) -> str:

@@ -62,6 +62,7 @@ KINDS: dict[str, Kind] = {kind.name: kind for kind in (
     Kind("acceleration", "m/s²", "m/s²"),
     Kind("time", "s", "s"),
     Kind("frequency", "1/s", "1/s"),
+    Kind("emission factor", "kg/kWh", "kg/kWh"),
     Kind("dynamic viscosity", "µPa·s", "µPa·s"),
     Kind("force", "N", "N"),
 )}
@@ -108,7 +109,7 @@ def print_unit(dimension: Dimension, system: str, wanted: Unit | None = None) ->
 
 
 US_UNITS = frozenset({
-    "°R", "°F", "psi", "mmHg", "inHg", "Btu", "hp", "Btu/h", "kBtu/h", "ton of refrigeration", "Btu/lb", "Btu/°R",
+    "°R", "°F", "psi", "mmHg", "inHg", "Btu", "hp", "Btu/h", "kBtu/h", "TR", "Btu/lb", "Btu/°R",
     "Btu/(lb·°R)", "Btu/(h·°R)", "Btu/(h·ft²·°R)", "lb", "lb/h", "lb/s", "lb/min", "ft³/min", "ft³/h", "ft³/s",
     "gal/min", "lb/ft³", "ft³/lb", "in", "ft", "ft²", "in²", "ft³", "in³", "ft/s"})
 """Units that give way to the SI unit of their kind on an SI sheet."""

@@ -15,7 +15,7 @@ from calcpack.units.kinds import KINDS, Kind
 from calcpack.units.spellings import GAUGE, folded
 from calcpack.units.unit import Unit, dimension_text, unit
 
-_QUANTITY = re.compile(r"\s*([+-]?(?:\d+(?:\.\d*)?|\.\d+)(?:[eE][+-]?\d{1,3})?)(?:\s+(\S.*?))?\s*\Z")
+_QUANTITY = re.compile(r"\s*([+-]?(?:[0-9]+(?:\.[0-9]*)?|\.[0-9]+)(?:[eE][+-]?[0-9]{1,3})?)(?:\s+(\S.*?))?\s*\Z")
 _GLUED = re.compile(r"\s*[+-]?\d[\d.]*(?:[eE][+-]?\d+)?[A-Za-z°%µ]")
 
 
