@@ -28,3 +28,19 @@ class FluidDefinition:
     basis: str = "mole"
     constant_cp: float | None = None
     density: float | None = None
+
+    @property
+    def words(self) -> str:
+        """The definition as the sheet states it, whole: ``R-290; reference IIR``."""
+        parts = [self.name or "unnamed"]
+        parts += [f"model {self.model}"] if self.model else []
+        parts += [f"reference {self.reference}"] if self.reference else []
+        if self.mass_fraction is not None:
+            parts.append(f"mass fraction {self.mass_fraction!r}")
+        if self.composition:
+            parts.append(f"shares by {self.basis}: " + ", ".join(f"{name} {x!r}" for name, x in self.composition))
+        if self.constant_cp is not None:
+            parts.append(f"heat capacity {self.constant_cp!r} J/(kg·K)")
+        if self.density is not None:
+            parts.append(f"density {self.density!r} kg/m³")
+        return "; ".join(parts)

@@ -4,9 +4,10 @@ from __future__ import annotations
 from collections.abc import Mapping
 
 from calcpack.errors import Fault, SpecError
+from calcpack.methods import ladders
 from calcpack.methods.method import Method, Option, Role
 from calcpack.plan.equipment.streams import Stream, entropic_mean, inlet_state, line, stream
-from calcpack.plan.facts import Bound, Box, Equal, Link, Sketch
+from calcpack.plan.facts import Again, Bound, Box, Equal, Link, Sketch, StreamLine
 from calcpack.plan.plan import Plan, Section
 
 OPTIONS = (
@@ -102,6 +103,7 @@ def _bound(plan: Plan, hot: str, cold: str) -> None:
     section.formula("S_dot_h", f"Q_dot_h / {hot}", "Entropy flow with the heat at the hot side", "kW/K")
     section.formula("S_dot_c", f"Q_dot_c / {cold}", "Entropy flow with the heat at the cold side", "kW/K",
                     note="equal to that at the hot side: the machine makes no entropy")
+    ladders.carnot(plan, hot, cold)
     plan.facts.equals.append(Equal("S_dot_h", "S_dot_c", "a reversible machine makes no entropy", 1e-9))
     if plan.options["between"] == "streams":
         _flows(plan, section)
@@ -143,6 +145,10 @@ def _dead_state(plan: Plan) -> None:
                    "Entropic mean temperature of the heat given up", "degC")
     second.formula("eta_rev", "1 - T_0 / T_m_source", "Efficiency of the reversible engine", reference=CARNOT)
     second.formula("W_dot_rev_2", "eta_rev * Q_dot_h", "Maximum power, second way", "kW")
+    plan.facts.streams.append(StreamLine("Source, cooled to the dead state", "source", "m_dot_source", "T_source_in", "T_0",
+                                         "p_source", "h_source_in", "h_source_0", "Q_dot_h"))
+    plan.facts.again.append(Again("Q_dot_c", "T_0 * m_dot_source * (s_source_in - s_source_0)",
+                                  "the entropy that the stream gives up, at the dead state's temperature"))
     plan.facts.equals.append(Equal("W_dot_rev", "W_dot_rev_2", "maximum power by exergy and by mean temperature"))
 
 
@@ -151,6 +157,7 @@ def _real(plan: Plan) -> None:
     engine = plan.options["machine"] == "engine"
     typical = {"engine": "120 kW", "heat-pump": "160 kW", "refrigerator": "25 kW"}[plan.options["machine"]]
     plan.input("W_dot_real", "power", "Power of the real machine", typical, low="0 kW", low_open=True)
+    ladders.bound(plan, engine=engine)
     section = plan.section("A real machine against the bound")
     if engine:
         section.formula("eta_real", "W_dot_real / Q_dot_h", "Efficiency of the real machine")

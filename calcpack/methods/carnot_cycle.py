@@ -4,7 +4,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 
 from calcpack.methods.method import Method, Option
-from calcpack.plan.facts import Bound, Diagram, Equal, Path, StatePoint
+from calcpack.plan.facts import Again, Bound, Diagram, Equal, Path, StatePoint
 from calcpack.plan.plan import Plan
 
 OPTIONS = (
@@ -97,6 +97,10 @@ def _processes(plan: Plan) -> None:
                     reference="isotherm: U is constant")
     section.formula("W_41", "n * C_v * (T_c - T_h)", "Work on the adiabat from 4 to 1; below zero it is drawn", "J",
                     reference="adiabat: Q is zero, W is the fall of U")
+    plan.facts.again += [
+        Again("W_23", "(p_2 * V_2 - p_3 * V_3) / (gamma - 1)", "from pressures and volumes at the ends of the adiabat"),
+        Again("S_2", "n * R_m * ln(p_1 / p_2)", "from the pressures along the hot isotherm"),
+        Again("S_4", "S_1", "the entropy comes back to where it began", scale="S_2")]
     section.formula("S_1", "0 J/K", "Entropy at corner 1, taken as the zero", "J/K")
     section.formula("S_2", "S_1 + Q_12 / T_h", "Entropy at corner 2", "J/K")
     section.formula("S_3", "S_2", "Entropy at corner 3: the adiabat is reversible", "J/K")

@@ -1,6 +1,7 @@
 """What a method is: options, fluids it needs, and a function that lays its plan."""
 from __future__ import annotations
 
+import re
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 
@@ -9,15 +10,34 @@ from calcpack.plan.plan import Plan
 
 @dataclass(frozen=True, slots=True)
 class Option:
-    """A choice that shapes the plan; ``values`` maps each value to its meaning, the first is the default."""
+    """A choice that shapes the plan; ``values`` maps each value to its meaning, the first is the default.
+
+    Where the values cannot all be listed, ``pattern`` is a regular expression
+    for the further ones and ``pattern_text`` says in words what they are.
+    """
 
     name: str
     title: str
     values: Mapping[str, str]
+    pattern: str = ""
+    pattern_text: str = ""
 
     @property
     def default(self) -> str:
         return next(iter(self.values))
+
+    @property
+    def expected(self) -> str:
+        """What can be given, in words."""
+        return "one of " + ", ".join(self.values) + (f"; or {self.pattern_text}" if self.pattern else "")
+
+    def accepts(self, value: str) -> bool:
+        """Whether ``value`` can be given."""
+        return value in self.values or bool(self.pattern and re.fullmatch(self.pattern, value))
+
+    def meaning(self, value: str) -> str:
+        """What an accepted value means; the words of ``pattern_text`` for one that is not listed."""
+        return self.values.get(value, self.pattern_text)
 
 
 @dataclass(frozen=True, slots=True)

@@ -2,6 +2,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from textwrap import wrap
 
 from calcpack.errors import CommandError, Fault, nearest
 from calcpack.methods import Method, methods
@@ -69,11 +70,11 @@ def chosen_options(method: Method, given: Mapping[str, str]) -> dict[str, str]:
     """All options, those of ``given`` checked."""
     for name, value in given.items():
         option = method.option(name)
-        if option is None or value not in option.values:
+        if option is None or not option.accepts(value):
             names = [one.name for one in method.options] if option is None else list(option.values)
             raise CommandError(Fault(f"{method.name} has no option {name}={value}",
-                                     expected="one of " + ", ".join(names), hint=nearest(
-                                         name if option is None else value, names)))
+                                     expected="one of " + ", ".join(names) if option is None else option.expected,
+                                     hint=nearest(name if option is None else value, names)))
     return method.complete(given)
 
 
@@ -88,7 +89,7 @@ def starter(name: str, given: Mapping[str, str]) -> str:
     """The spec's text for the method ``name`` with the options ``given``."""
     method = method_named(name)
     options = chosen_options(method, given)
-    text = HEAD.format(title=method.title, name=method.name)
+    text = HEAD.format(title=_scalar(method.title), name=method.name)
     if not method.options:
         return text + OWN_STEPS + TAIL
     text += "  options:\n" + "".join(_option(method, one, value) for one, value in options.items())
@@ -99,6 +100,11 @@ def starter(name: str, given: Mapping[str, str]) -> str:
     return text + f"results: [{', '.join(method.results(options))}]\n" + TAIL
 
 
+def _scalar(text: str) -> str:
+    """A text as YAML reads it back: quoted where a colon would start a mapping."""
+    return f'"{text}"' if ": " in text else text
+
+
 def _line(text: str, comment: str) -> str:
     return f"{text:<34} # {comment}\n"
 
@@ -106,7 +112,9 @@ def _line(text: str, comment: str) -> str:
 def _option(method: Method, name: str, value: str) -> str:
     option = method.option(name)
     others = ", ".join(one for one in option.values if one != value)
-    return _line(f"    {name}: {value}", f"{option.title}; or {others}")
+    more = "".join(f"    # {line}\n" for line in wrap(f"{name} takes one of the values below, or {option.pattern_text}",
+                                                     width=100)) if option.pattern else ""
+    return more + _line(f"    {name}: {value}", f"{option.title}; or {others}")
 
 
 def _input(need: InputNeed) -> str:

@@ -121,6 +121,73 @@ class Equal:
 
 
 @dataclass(frozen=True, slots=True)
+class Again:
+    """A result found again: ``formula`` must give the value of ``symbol``, by the way that ``text`` says.
+
+    ``scale`` is the symbol that rounding is measured by, where the value itself may be zero.
+    """
+
+    symbol: str
+    formula: str
+    text: str
+    scale: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class MachineEnds:
+    """A machine between two states, whose isentropic efficiency can be found back from them.
+
+    ``h_in``, ``s_in`` and ``p_out`` name what fixes the isentropic outlet,
+    ``work`` is the work a kilogram at the shaft, a formula; ``drives`` where it draws work.
+    """
+
+    name: str
+    fluid: str
+    h_in: str
+    s_in: str
+    p_out: str
+    work: str
+    eta: str
+    drives: bool
+
+
+@dataclass(frozen=True, slots=True)
+class Rung:
+    """A share of the way from the reversible figure to the net one, lost outside the control volumes.
+
+    ``formula`` gives it [W]; beside the sheet's symbols it may use ``T_dead``,
+    the temperature of the dead state. ``either`` allows it to be below zero.
+    """
+
+    label: str
+    formula: str
+    either: bool = False
+
+
+@dataclass(frozen=True, slots=True)
+class Ladder:
+    """The way from a reversible figure, ``start`` (a formula like a rung's), to the net figure ``end``.
+
+    Between ``before`` and ``after`` stand the control volumes, each with its
+    exergy destruction, but for those of ``skip``, which lie before the start.
+    ``upward`` where the losses add to the power (it is drawn, not given).
+    ``room`` names the heats that go to the surroundings, at the dead state's
+    temperature; ``Q_dot_loss`` stands for ``Q_dot_loss_low`` as well.
+    """
+
+    title: str
+    start: str
+    start_label: str
+    end: str
+    end_label: str
+    before: tuple[Rung, ...] = ()
+    after: tuple[Rung, ...] = ()
+    upward: bool = False
+    room: tuple[str, ...] = ()
+    skip: tuple[str, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
 class Path:
     """A line of a diagram between two states: at constant ``p``, ``s``, ``h``, ``v``, ``T`` or straight."""
 
@@ -171,7 +238,10 @@ class Sketch:
 
 @dataclass(slots=True)
 class Facts:
-    """All that a plan says about its steps."""
+    """All that a plan says about its steps.
+
+    ``conductances`` maps an exchanger's series to the symbol of its conductance.
+    """
 
     states: list[StatePoint] = field(default_factory=list)
     streams: list[StreamLine] = field(default_factory=list)
@@ -179,6 +249,10 @@ class Facts:
     volumes: list[Volume] = field(default_factory=list)
     bounds: list[Bound] = field(default_factory=list)
     equals: list[Equal] = field(default_factory=list)
+    again: list[Again] = field(default_factory=list)
+    machines: list[MachineEnds] = field(default_factory=list)
+    conductances: dict[str, str] = field(default_factory=dict)
+    ladder: Ladder | None = None
     diagrams: list[Diagram] = field(default_factory=list)
     sketch: Sketch = field(default_factory=Sketch)
     roles: dict[str, str] = field(default_factory=dict)

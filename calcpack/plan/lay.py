@@ -11,7 +11,19 @@ from calcpack.formula.tree import FUNCTIONS, Node, PropertyCall, Symbol, symbols
 from calcpack.plan.laid import LaidColumn, LaidDemand, LaidInput, LaidPlan, LaidStep
 from calcpack.plan.outputs import PROPERTIES, measure_of_property, measure_of_unit
 from calcpack.plan.plan import Plan
-from calcpack.plan.steps import ChoiceStep, Closing, Demand, LookupStep, OptimumStep, PropertyStep, RootStep, SeriesStep, Step
+from calcpack.plan.steps import (
+    CasesStep,
+    ChoiceStep,
+    Closing,
+    Demand,
+    LookupStep,
+    OptimumStep,
+    PropertyStep,
+    RootStep,
+    SeriesStep,
+    Step,
+    TotalStep,
+)
 from calcpack.units import Unit, dimension_text, print_unit, read_quantity, unit
 
 Locate = Callable[[Fault, tuple[str | int, ...]], Fault]
@@ -89,6 +101,10 @@ class _Layer:
                 result = self.lookup(step, number)
             case SeriesStep():
                 result = self.series(step, number)
+            case CasesStep():
+                result = self.cases(step, number)
+            case TotalStep():
+                result = self.total(step, number)
             case _:
                 tree = parse(step.formula)
                 if isinstance(tree, PropertyCall):
@@ -256,6 +272,23 @@ class _Layer:
         for index, row in enumerate(step.rows):
             self.measured(trees[f"row {index}"], row.first)
         return self.finished(step, number, None, trees, local[step.column], tuple(columns))
+
+    def cases(self, step: CasesStep, number: str) -> LaidStep:
+        for name in step.columns:
+            self.of_symbol(Symbol(name, 0), name, {})
+        result = self.finished(step, number, None, {}, Measure(unit("").dimension))
+        return replace(result, uses=step.columns)
+
+    def total(self, step: TotalStep, number: str) -> LaidStep:
+        found = self.of_symbol(Symbol(step.column, 0), step.column, {})
+        self.of_symbol(Symbol(step.table, 0), step.table, {})
+        if step.reduction == "sum" and found.level == 1.0:
+            raise FormulaError(Fault(f"{step.column} is a temperature level, and levels have no sum",
+                                     expected="min, max or mean"))
+        laid = (one for one in self.items if isinstance(one, LaidStep))
+        like = next((one.unit.symbol for one in laid if one.symbol == step.column), None)
+        result = self.finished(replace(step, unit=step.unit or like), number, None, {}, found)
+        return replace(result, uses=(step.column, step.table))
 
 
 _SILENT = "a symbol it needs has a fault of its own"

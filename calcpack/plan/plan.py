@@ -7,7 +7,21 @@ from typing import Any
 
 from calcpack.plan.facts import Facts, InputNeed
 from calcpack.plan.steps import (
-    Branch, ChoiceStep, Closing, Column, Demand, LookupStep, OptimumStep, PropertyStep, RootStep, Row, SeriesStep, Step)
+    Branch,
+    CasesStep,
+    ChoiceStep,
+    Closing,
+    Column,
+    Demand,
+    LookupStep,
+    OptimumStep,
+    PropertyStep,
+    RootStep,
+    Row,
+    SeriesStep,
+    Step,
+    TotalStep,
+)
 
 
 class Plan:
@@ -104,3 +118,12 @@ class Section:
             symbol, title, "", unit, rows=tuple(Row(*row) for row in rows),
             columns=tuple(Column(name, text, formula, print_in) for name, text, formula, print_in in columns),
             reduction=reduction, column=column, **more))
+
+    def cases(self, symbol: str, title: str, **more: Any) -> str:
+        """A table of all steps before this one, solved once a row; ``more`` are the fields of :class:`CasesStep`."""
+        return self._add(CasesStep(symbol, title, **more))
+
+    def total(self, symbol: str, of: tuple[str, str, str], title: str, unit: str | None = None, **more: str) -> str:
+        """What a column of a cases step comes to; ``of`` are (reduction, column, table)."""
+        reduction, column, table = of
+        return self._add(TotalStep(symbol, title, "", unit, table=table, column=column, reduction=reduction, **more))

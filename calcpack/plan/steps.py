@@ -149,3 +149,42 @@ class SeriesStep(Step):
     column: str = ""
 
     kind = "series"
+
+
+@dataclass(frozen=True, slots=True)
+class CaseRow:
+    """A row that the whole calculation is solved for: what each given column is there, as quantities."""
+
+    label: str
+    values: tuple[str, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class CasesStep(Step):
+    """A table of the calculation solved once a row; its value is the number of rows.
+
+    ``given`` are the symbols of the steps that each row sets, ``bound`` of those
+    that follow from them and take the place of inputs, ``columns`` all symbols
+    of the table, the given first. The steps before this one are those of the
+    row ``shown``; ``source`` says where the rows are from.
+    """
+
+    given: tuple[str, ...] = ()
+    bound: tuple[str, ...] = ()
+    columns: tuple[str, ...] = ()
+    rows: tuple[CaseRow, ...] = ()
+    shown: int = 0
+    source: str = ""
+
+    kind = "cases"
+
+
+@dataclass(frozen=True, slots=True)
+class TotalStep(Step):
+    """The ``reduction`` (``sum``, ``min``, ``max`` or ``mean``) of the ``column`` of the cases step ``table``."""
+
+    table: str = ""
+    column: str = ""
+    reduction: str = "sum"
+
+    kind = "total"

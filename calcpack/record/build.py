@@ -7,14 +7,18 @@ from importlib.metadata import version
 from typing import TYPE_CHECKING, Any
 
 import calcpack
+from calcpack.fluids.definition import FluidDefinition
+from calcpack.record.constants import constant_entries
 from calcpack.record.identity import input_identity
 from calcpack.record.record import FORMAT, Record
 from calcpack.record.steps import step_entries
 from calcpack.record.views import exchangers, sketch, states, streams
 from calcpack.solving.curves import diagrams
 from calcpack.solving.solution import Solution, celsius_twin
+from calcpack.spec.safety import QUANTITIES
+from calcpack.solving.tolerances import uncertainty
 from calcpack.units import print_unit, read_quantity, shown_with_unit, unit
-from calcpack.units.digits import number_text
+from calcpack.units.digits import decimals_for, number_text
 
 if TYPE_CHECKING:
     from calcpack.checks import Findings
@@ -42,16 +46,17 @@ def build_record(solution: Solution) -> Record:
         "revisions": [asdict(one) for one in spec.revisions],
         "states": states(solution), "streams": streams(solution), "exchangers": exchangers(solution),
         "diagrams": diagrams(solution), "sketch": sketch(solution),
-        "limits": [], "checks": [], "cautions": [],
+        "uncertainty": uncertainty(solution), "limits": [], "usual_limits": [], "checks": [], "cautions": [], "exergy": None, "ladder": None,
         "engine": engine(solution), "spec_sha256": spec.sha256, "spec_file": spec.file.rsplit("/", 1)[-1],
     }
     return Record(data)
 
 
 def with_findings(record: Record, findings: Findings) -> Record:
-    """The same record with limits, checks and cautions."""
-    return Record({**record.data, "limits": list(findings.limits), "checks": list(findings.checks),
-                   "cautions": list(findings.cautions)})
+    """The same record with limits, checks, cautions, exergy balance and ladder."""
+    return Record({**record.data, "limits": list(findings.limits), "usual_limits": list(findings.usual_limits),
+                   "checks": list(findings.checks),
+                   "cautions": list(findings.cautions), "exergy": findings.exergy, "ladder": findings.ladder})
 
 
 def _sheet(solution: Solution) -> dict[str, Any]:
@@ -74,18 +79,31 @@ def _case(solution: Solution) -> dict[str, Any]:
     options = {}
     for name, value in solution.options.items():
         option = method.option(name)
-        options[name] = {"value": value, "title": option.title, "meaning": option.values[value],
+        options[name] = {"value": value, "title": option.title, "meaning": option.meaning(value),
                          "given": name in solution.spec.case.options}
     roles = {role.name: role.title for role in method.roles(solution.options)}
     return {"method": method.name, "method_title": method.title, "method_text": method.text, "options": options,
             "assumes": list(method.assumes), "leaves_out": list(method.leaves_out),
-            "fluids": {role: _fluid(fluid, roles.get(role, role)) for role, fluid in solution.plan.fluids.items()}}
+            "safety": _safety(solution),
+            "fluids": {role: _fluid(fluid, roles.get(role, role), solution.spec.case.fluids.get(role),
+                                    solution.system)
+                       for role, fluid in solution.plan.fluids.items()}}
 
 
-def _fluid(fluid: Any, title: str) -> dict[str, Any]:
-    return {"title": title, "designation": fluid.designation, "model": fluid.model, "equation": fluid.equation,
-            "reference_state": fluid.reference_state, "range": fluid.range_text, "identity": fluid.identity,
-            "facts": [asdict(fact) for fact in fluid.facts]}
+def _safety(solution: Solution) -> dict[str, Any]:
+    """The safety quantities as they were written; cautions read them, no step does."""
+    safety = solution.spec.case.safety
+    return {"source": safety.source, "room_level": safety.room_level, "fluid_group": safety.fluid_group,
+            "quantities": [{"name": one.name, "title": one.says, "written": safety.values[one.name],
+                            "value": one.value(safety.values[one.name], solution.p_atm)}
+                           for one in QUANTITIES if one.name in safety.values]}
+
+
+def _fluid(fluid: Any, title: str, stated: FluidDefinition | None, system: str) -> dict[str, Any]:
+    return {"title": title, "designation": fluid.designation, "stated": stated.words if stated else "",
+            "model": fluid.model, "equation": fluid.equation, "reference_state": fluid.reference_state,
+            "range": fluid.range_text, "identity": fluid.identity,
+            "constants": constant_entries(fluid, system), "facts": [asdict(fact) for fact in fluid.facts]}
 
 
 def _inputs(solution: Solution, identities: dict[str, str]) -> list[dict[str, Any]]:
@@ -110,8 +128,9 @@ def _tolerance(solution: Solution, symbol: str, text: str | None) -> dict[str, A
     laid = solution.plan.inputs[symbol]
     shown_in = print_unit(laid.measure.dimension, solution.system, None if reading.unit.level else reading.unit)
     number = shown_in.from_si(reading.value)
-    plain = next(text for decimals in range(0, 12)
-                 if abs(float(text := number_text(number, decimals)) - number) <= 1e-4 * abs(number))
+    forms = (number_text(number, decimals) for decimals in range(0, 12))
+    plain = next((form for form in forms if abs(float(form) - number) <= 1e-4 * abs(number)),
+                 number_text(number, decimals_for(number, 5)))
     return {"value": reading.value, "shown": plain, "unit": shown_in.symbol, "written": text}
 
 

@@ -53,8 +53,13 @@ class Record:
 
     @property
     def failed_limits(self) -> tuple[Mapping[str, Any], ...]:
-        """The limits that do not hold."""
-        return tuple(limit for limit in self.data["limits"] if limit["status"] == "fails")
+        """The limits that do not hold and that nobody has waived."""
+        return tuple(limit for limit in self.data["limits"] if limit["status"] == "fails" and not limit.get("waiver"))
+
+    @property
+    def waived_limits(self) -> tuple[Mapping[str, Any], ...]:
+        """The limits that do not hold, and that somebody answers for."""
+        return tuple(limit for limit in self.data["limits"] if limit["status"] == "fails" and limit.get("waiver"))
 
     def to_json(self) -> str:
         """The record as canonical text."""

@@ -1,17 +1,19 @@
 """Solved steps to the record's entries: formula, numbers as printed, result."""
 from __future__ import annotations
 
+import math
 from collections.abc import Callable, Mapping
 from typing import Any
 
 from calcpack.formula.text import printed_quantity, to_text
 from calcpack.formula.tree import Node, PropertyCall, symbols_of, walk
 from calcpack.plan.laid import LaidStep
-from calcpack.plan.steps import LookupStep, OptimumStep, RootStep, SeriesStep
+from calcpack.plan.steps import CasesStep, LookupStep, OptimumStep, RootStep, SeriesStep, TotalStep
+from calcpack.record.cases import case_table
 from calcpack.record.identity import step_identity
 from calcpack.solving.program import neighbours
 from calcpack.solving.solution import Solution, printed_freely
-from calcpack.units import print_unit, read_quantity, shown_with_unit
+from calcpack.units import Unit, print_unit, read_quantity, shown_with_unit
 from calcpack.units.digits import decimals_for, number_text
 
 
@@ -31,9 +33,9 @@ def _entry(solution: Solution, step: LaidStep, identities: dict[str, str]) -> di
         "section": str(step.step.section + 1), "own": step.step.place is not None}
     detail = _DETAILS.get(step.kind)
     if detail is not None:
-        entry[step.kind if step.kind != "series" else "table"] = detail(solution, step)
+        entry[_NAMES.get(step.kind, step.kind)] = detail(solution, step)
     identities[symbol] = entry["identity"] = step_identity(
-        symbol, step.kind, _formulas(solution, step), step.unit.symbol, step.uses, identities, _fluids(solution, step))
+        symbol, step.kind, _formulas(solution, step), step.unit.symbol, _reads(solution, step), identities, _fluids(solution, step))
     return entry
 
 
@@ -42,6 +44,10 @@ def formula_text(step: LaidStep) -> str:
     match step.step:
         case SeriesStep(reduction=reduction, column=column):
             return f"{reduction} of {column}"
+        case CasesStep():
+            return "number of rows"
+        case TotalStep(reduction=reduction, column=column, table=table):
+            return f"{reduction} of {column} in {table}"
         case LookupStep():
             return f"table at {to_text(step.tree)}"
     if step.kind == "choice":
@@ -53,7 +59,7 @@ def formula_text(step: LaidStep) -> str:
 def numbers_text(solution: Solution, step: LaidStep) -> str:
     """The formula with its operands as printed; for a choice, of the branch that held."""
     match step.step:
-        case SeriesStep() | RootStep() | OptimumStep():
+        case SeriesStep() | RootStep() | OptimumStep() | CasesStep() | TotalStep():
             return ""
     if step.kind == "choice":
         held = solution.program.held[step.symbol]
@@ -67,10 +73,23 @@ def _formulas(solution: Solution, step: LaidStep) -> list[str]:
     match step.step:
         case LookupStep(points=points):
             texts += [f"{x}: {y}" for x, y in points]
+        case CasesStep(rows=rows):
+            texts += [f"{row.label}: {', '.join(row.values)}" for row in rows]
         case RootStep() | OptimumStep():
             # An unknown hangs on all that its body reads; the body's own symbols stand by their formulas.
-            texts += [to_text(one.tree) for one in root_body(solution, step.symbol) if one.tree is not None]
+            texts += [text for one in root_body(solution, step.symbol)
+                      for text in (one.symbol, *_formulas(solution, one), *_fluids(solution, one))]
     return texts
+
+
+def _reads(solution: Solution, step: LaidStep) -> tuple[str, ...]:
+    """What a step's value hangs on: for an unknown, also what its body reads from before it."""
+    if not isinstance(step.step, (RootStep, OptimumStep)):
+        return step.uses
+    body = root_body(solution, step.symbol)
+    inside = {step.symbol, *(one.symbol for one in body)}
+    outside = (name for one in body for name in one.uses if name not in inside)
+    return tuple(dict.fromkeys((*step.uses, *outside)))
 
 
 def root_body(solution: Solution, symbol: str) -> list[LaidStep]:
@@ -87,9 +106,11 @@ def root_body(solution: Solution, symbol: str) -> list[LaidStep]:
         elif isinstance(item, Closing) and item.symbol == symbol:
             break
     needed = set(symbols_of(solution.step(symbol).tree))
-    for step in reversed(inside):
-        if step.symbol in needed:
-            needed |= set(step.uses)
+    grown = True
+    while grown:
+        # An inner root stands before the steps that its equation reads: one pass backwards would miss those.
+        more = {name for step in inside if step.symbol in needed for name in step.uses} - needed
+        grown, needed = bool(more), needed | more
     return [step for step in inside if step.symbol in needed]
 
 
@@ -106,12 +127,24 @@ def _root(solution: Solution, step: LaidStep) -> dict[str, Any]:
     left = solution.program.residual_at(step.symbol, printed, solution.values)
     equation_unit = print_unit(_equation_dimension(solution, step), solution.system)
     closing = [name for name in symbols_of(step.tree) if not _given_before(solution, step, name)]
-    decimals = solution.printing.decimals[step.symbol]
-    return {"unknown": step.symbol, "equation": to_text(step.tree), "low": _end(step, root.low, decimals),
-            "high": _end(step, root.high, decimals), "low_formula": to_text(step.trees["low"]),
-            "high_formula": to_text(step.trees["high"]), "residual": printed_freely(left, equation_unit, 2),
+    return {"unknown": step.symbol, "equation": to_text(step.tree), **_ends(solution, step, root.low, root.high),
+            "residual": printed_freely(left, equation_unit, 2),
+            "residual_below": _below(solution, step, left, equation_unit),
             "residual_value": float(left), "iterations": root.evaluations,
             "closed_by": [solution.step(name).id for name in closing]}
+
+
+NIL = 1e-4
+"""Share of what the last printed place moves an equation by; a residual below it has no digits to print."""
+
+
+def _below(solution: Solution, step: LaidStep, left: float, equation_unit: Unit) -> str | None:
+    """The power of ten that a residual too small for digits of its own is below; None for one that has digits."""
+    beside = solution.printing.printed(step.symbol) + solution.printing.place(step.symbol)
+    nil = NIL * abs(solution.program.residual_at(step.symbol, beside, solution.values) - left)
+    if abs(left) >= nil:
+        return None
+    return shown_with_unit(f"1e{math.ceil(math.log10(nil / equation_unit.factor))}", equation_unit)
 
 
 def _optimum(solution: Solution, step: LaidStep) -> dict[str, Any]:
@@ -125,16 +158,38 @@ def _optimum(solution: Solution, step: LaidStep) -> dict[str, Any]:
         return {"x": number_text(step.unit.from_si(x), max(0, digits)), "x_value": x,
                 "y": number_text(objective_unit.from_si(y), decimals), "y_value": y}
     return {"unknown": step.symbol, "objective": to_text(step.tree), "sense": step.step.sense,
-            "low": _end(step, found.low, digits), "high": _end(step, found.high, digits),
-            "low_formula": to_text(step.trees["low"]), "high_formula": to_text(step.trees["high"]),
-            "iterations": found.evaluations, "objective_unit": objective_unit.symbol,
+            **_ends(solution, step, found.low, found.high), "iterations": found.evaluations,
+            "objective_unit": objective_unit.symbol,
             "optimum": pair(found.value, found.objective), "curve": [pair(x, y) for x, y in found.curve],
             "closed_by": [solution.step(name).id for name in symbols_of(step.tree)
                           if not _given_before(solution, step, name)]}
 
 
+def _ends(solution: Solution, step: LaidStep, low: float, high: float) -> dict[str, Any]:
+    """The ends of a bracket as used, their formulas, and what the formula says where an end was moved inwards."""
+    finest, found = solution.printing.decimals[step.symbol], {}
+    listed = [*(solution.values[name] for name in solution.program.slots), 0.0]
+    for name, used in (("low", low), ("high", high)):
+        value = solution.program.value_of(step.trees[name])(listed)
+        decimals = _end_decimals(solution, step, name, value, finest)
+        stated = _end(step, value, decimals)
+        found |= {name: _end(step, used, decimals), f"{name}_formula": to_text(step.trees[name])}
+        found[f"{name}_stated"] = stated if stated != found[name] else None
+    return found
+
+
+def _end_decimals(solution: Solution, step: LaidStep, name: str, value: float, finest: int) -> int:
+    """Places of a bracket's end: no finer than its operands as printed give it again."""
+    again = solution.printing.redone_tree(step.trees[name], {})
+    gap = abs(again - value) / step.unit.factor
+    decimals = min(2, max(0, finest))
+    while decimals > 0 and not 2.0 * gap <= 10.0 ** -decimals:
+        decimals -= 1
+    return decimals
+
+
 def _end(step: LaidStep, value: float, decimals: int) -> str:
-    return shown_with_unit(number_text(step.unit.from_si(value), min(2, max(0, decimals))), step.unit)
+    return shown_with_unit(number_text(step.unit.from_si(value), decimals), step.unit)
 
 
 def _equation_dimension(solution: Solution, step: LaidStep) -> Any:
@@ -175,7 +230,8 @@ def _table(solution: Solution, step: LaidStep) -> dict[str, Any]:
                 "formula": to_text(column.tree) if column.tree is not None else ""} for column in step.columns]
     rows = []
     for index, (row, cells) in enumerate(zip(step.step.rows, solution.program.tables[step.symbol], strict=True)):
-        rows.append({"label": row.label, "cells": _cells(solution, step, index, cells)})
+        rows.append({"label": row.label, "formula": to_text(step.trees[f"row {index}"]),
+                     "cells": _cells(solution, step, index, cells)})
     return {"columns": columns, "rows": rows, "reduction": step.step.reduction, "column": step.step.column}
 
 
@@ -190,5 +246,12 @@ def _cells(solution: Solution, step: LaidStep, row: int, values: list[float]) ->
     return cells
 
 
+def _total(solution: Solution, step: LaidStep) -> dict[str, Any]:
+    return {"reduction": step.step.reduction, "column": step.step.column, "table": solution.step(step.step.table).id}
+
+
 _DETAILS: Mapping[str, Callable[[Solution, LaidStep], dict[str, Any]]] = {
-    "root": _root, "optimum": _optimum, "choice": _choice, "lookup": _lookup, "series": _table}
+    "root": _root, "optimum": _optimum, "choice": _choice, "lookup": _lookup, "series": _table, "cases": case_table,
+    "total": _total}
+_NAMES = {"series": "table", "cases": "table"}
+"""Where a kind's detail stands in the entry, if not under its own name."""

@@ -3,7 +3,9 @@ from __future__ import annotations
 
 from typing import Any
 
+from calcpack.formula.tree import PropertyCall
 from calcpack.plan.facts import ExchangerView
+from calcpack.plan.laid import LaidStep
 from calcpack.solving.solution import Solution
 
 Quantity = dict[str, Any]
@@ -28,7 +30,7 @@ def states(solution: Solution) -> list[dict[str, Any]]:
 def _vapour_fraction(solution: Solution, point: Any) -> dict[str, Any]:
     """The vapour fraction of a two-phase state in words for the table; liquid and vapour by name."""
     from calcpack.errors import CalcpackError
-    if point.h is None:
+    if point.h is None or point.fluid not in solution.plan.fluids:
         return {"shown": "", "unit": ""}
     fluid = solution.plan.fluids[point.fluid]
     try:
@@ -72,8 +74,16 @@ def _exchanger(solution: Solution, view: ExchangerView) -> dict[str, Any]:
         rows.append({"label": row.label, "q_share": share, "Q_W": share * duty,
                      "T_hot_K": cells[index[view.hot]], "T_cold_K": cells[index[view.cold]]})
     gaps = [cells[index[view.pinch]] for cells in table]
+    sides = {side: _role(step, getattr(view, side)) for side in ("hot", "cold")}
     return {"id": step.id, "title": view.name, "Q_dot": quantity(solution, view.duty), "rows": rows,
+            "hot_role": sides["hot"], "cold_role": sides["cold"],
             "pinch": {"row": gaps.index(min(gaps)), "dT": quantity(solution, view.series)}}
+
+
+def _role(step: LaidStep, column: str) -> str | None:
+    """The role of the fluid whose temperature a column of a profile is; None where it is no look-up."""
+    tree = next(one.tree for one in step.columns if one.symbol == column)
+    return tree.fluid if isinstance(tree, PropertyCall) else None
 
 
 def sketch(solution: Solution) -> dict[str, Any]:

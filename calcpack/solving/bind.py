@@ -18,6 +18,8 @@ from calcpack.plan.lay import lay
 from calcpack.plan.outputs import measure_of_kind, measure_of_unit
 from calcpack.plan.plan import Plan
 from calcpack.solving.own import add_own_steps
+from calcpack.solving.series import Opened, close_series, kind_faults, open_series
+from calcpack.spec.drafts import SERIES
 from calcpack.units import Reading, kind_of_unit, print_unit, read_quantity
 
 if TYPE_CHECKING:
@@ -77,17 +79,30 @@ class _Binder:
         if not self.shaped:
             # A default in the place of a faulty option may contradict the others.
             del self.faults[count:]
-        self.shaped = self.shaped and len(self.faults) == count
+        opened = self.opened(plan)
+        self.shaped = self.shaped and len(self.faults) == count and SERIES not in self.spec.dropped
         inputs = self.inputs(plan.needs)
         if not self.shaped:
             return None
-        self.guarded(lambda: add_own_steps(plan, self.spec), ("steps",))
+        self.guarded(lambda: close_series(plan, self.spec, opened) if opened else add_own_steps(plan, self.spec),
+                     ("steps",))
         laid, faults = lay(plan, inputs, self.spec.sheet.units,
                            lambda fault, path: self.spec.located(fault, *path), self.spec.dropped)
         # A method's steps cannot be proved where an option, a fluid or an input of its own is at fault.
         self.faults += [fault for fault in faults if fault.place is not None or not self.faults]
-        self.outside(laid)
+        self.faults += kind_faults(laid, self.spec, opened) if opened else []
+        self.outside(laid, plan)
+        if self.spec.sheet.T_dead is not None and "T_0" in (*plan.needs, *self.spec.case.inputs):
+            self.fault("the dead state is given twice", ("sheet", "T_dead"), key=True,
+                       expected="the input T_0 alone, where the sheet has one")
         return Bound(self.spec, method, options, laid, self.readings, self.written)
+
+    def opened(self, plan: Plan) -> Opened | None:
+        """The series of the spec, if it has one that can be read."""
+        found: list[Opened] = []
+        if self.spec.case.series is not None and self.shaped:
+            self.guarded(lambda: found.append(open_series(plan, self.spec)), ("case", "series"))
+        return found[0] if found else None
 
     def guarded(self, call: Any, path: tuple) -> None:
         try:
@@ -201,11 +216,10 @@ class _Binder:
         except UnitError as error:
             self.faults += [fault.at(self.spec.place("case", "inputs", symbol, "tol")) for fault in error.faults]
 
-    def outside(self, laid: LaidPlan) -> None:
-        """Results and limits must name symbols of this sheet."""
-        known = [*laid.inputs, *(step.symbol for step in laid.steps)]
-        if any(fault.place is None or fault.what.startswith(("the input", "the fluid")) for fault in self.faults):
-            return
+    def outside(self, laid: LaidPlan, plan: Plan) -> None:
+        """Results and limits must name symbols of this sheet; one whose own step or input is at fault is not blamed."""
+        proved = {*laid.inputs, *(step.symbol for step in laid.steps)}
+        known = [*plan.needs, *self.spec.case.inputs, *(step.symbol for step in (*plan.steps, *self.spec.steps))]
         for index, result in enumerate(self.spec.results):
             if result.symbol not in known:
                 self.fault(f"the result {result.symbol!r} has no value on this sheet", ("results", index),
@@ -214,8 +228,8 @@ class _Binder:
             if limit.symbol not in known:
                 self.fault(f"the limited quantity {limit.symbol!r} has no value on this sheet",
                            ("limits", index, "symbol"), hint=nearest(limit.symbol, known))
-                continue
-            self.limit_bound(laid, index, known)
+            elif limit.symbol in proved:
+                self.limit_bound(laid, index, known)
 
     def limit_bound(self, laid: LaidPlan, index: int, known: list[str]) -> None:
         limit = self.spec.limits[index]

@@ -5,6 +5,7 @@ rounded to six digits, which no eye can tell from more.
 """
 from __future__ import annotations
 
+import math
 from collections.abc import Callable
 from typing import Any
 
@@ -18,6 +19,7 @@ POINTS = 40
 AXES: dict[str, tuple[tuple[str, str, str], tuple[str, str, str]]] = {
     "T-s": (("s", "kJ/(kg·K)", "Btu/(lb·°R)"), ("T", "°C", "°F")),
     "p-V": (("v", "L", "ft³"), ("p", "bar", "psi")),
+    "p-v": (("v", "m³/kg", "ft³/lb"), ("p", "bar", "psi")),
     "T-S": (("s", "J/K", "Btu/°R"), ("T", "K", "°R")),
     "log p-h": (("h", "kJ/kg", "Btu/lb"), ("p", "bar", "psi")),
 }
@@ -62,6 +64,8 @@ def _of(solution: Solution, point: StatePoint, quantity: str) -> float:
 
 def _dome(fluid: Any, kind: str, lowest: float) -> tuple[list[float], list[float]] | None:
     from calcpack.fluids import saturation_curve
+    if kind not in ("T-s", "log p-h"):
+        return None
     try:
         curve = saturation_curve(fluid, points=60, T_low=lowest - 15.0)
     except CalcpackError:
@@ -79,16 +83,19 @@ def _path(solution: Solution, fluid: Any, path: Path, points: dict[str, StatePoi
     if path.along == "straight":
         return [ends[0][0], ends[1][0]], [ends[0][1], ends[1][1]]
     if fluid is None:
-        return _gas_path(solution, path, ends, axes)
+        return _gas_path(path, ends, axes)
     fixed = path.along
-    moving = "h" if fixed == "p" else "p"
-    constant = _of(solution, start, fixed)
+    moving = {"p": "h" if start.h else "T", "v": "T"}.get(fixed, "p")
+    constant, at_end = _of(solution, start, fixed), _of(solution, end, fixed)
     read = [_reader(fluid, quantity, fixed, moving) for quantity in axes]
     first, last = _of(solution, start, moving), _of(solution, end, moving)
+    span = (last - first) or 1.0
     xs, ys = [ends[0][0]], [ends[0][1]]
     for value in _values(fluid, fixed, constant, first, last):
+        # What is constant but for a loss, such as the pressure along an exchanger, falls in step with what moves.
+        level = constant + (at_end - constant) * (value - first) / span
         try:
-            x, y = (one(constant, value) for one in read)
+            x, y = (one(level, value) for one in read)
         except CalcpackError:
             continue
         xs.append(x)
@@ -96,15 +103,21 @@ def _path(solution: Solution, fluid: Any, path: Path, points: dict[str, StatePoi
     return [*xs, ends[1][0]], [*ys, ends[1][1]]
 
 
-def _gas_path(solution: Solution, path: Path, ends: list[tuple[float, float]],
-              axes: tuple[str, str]) -> tuple[list[float], list[float]]:
-    """An isotherm or a reversible adiabat of an ideal gas between two corners, in p and V or T and S."""
+def _gas_path(path: Path, ends: list[tuple[float, float]], axes: tuple[str, str]) -> tuple[list[float], list[float]]:
+    """A change of an ideal gas of constant heat capacity between two corners, from the corners alone.
+
+    What is constant along an axis is straight. Else, in p and v, it is a power
+    law, p v^n = const; in T and s the temperature rises exponentially with s.
+    """
     (x0, y0), (x1, y1) = ends
-    if axes == ("s", "T"):
+    if path.along in axes or x0 == x1:
         return [x0, x1], [y0, y1]
-    exponent = 1.0 if path.along == "T" else solution.value("gamma")
-    xs = [x0 + (x1 - x0) * index / POINTS for index in range(POINTS)]
-    return [*xs, x1], [*(y0 * (x0 / x) ** exponent for x in xs), y1]
+    shares = [index / POINTS for index in range(POINTS + 1)]
+    xs = [x0 + (x1 - x0) * share for share in shares]
+    if axes[1] == "T":
+        return xs, [y0 * (y1 / y0) ** share for share in shares]
+    exponent = math.log(y1 / y0) / math.log(x1 / x0)
+    return xs, [y0 * (x / x0) ** exponent for x in xs]
 
 
 def _values(fluid: Any, fixed: str, constant: float, first: float, last: float) -> list[float]:
@@ -131,6 +144,9 @@ def _reader(fluid: Any, quantity: str, fixed: str, moving: str) -> Callable[[flo
         return fluid.reader(quantity, (fixed, moving))
     if fixed == "h":
         return fluid.reader(quantity, ("h", "p"))
+    if fixed == "v":
+        at_density = fluid.reader(quantity, ("T", "rho"))
+        return lambda v, T: at_density(T, 1.0 / v)
     return fluid.reader(quantity, (fixed, moving))
 
 

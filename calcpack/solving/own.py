@@ -1,6 +1,7 @@
 """The engineer's own steps, from the spec to the end of the plan."""
 from __future__ import annotations
 
+from collections.abc import Collection
 from typing import TYPE_CHECKING, Any
 
 from calcpack.errors import Fault, SpecError
@@ -16,22 +17,24 @@ if TYPE_CHECKING:
 SECTION = "The engineer's own steps"
 
 
-def add_own_steps(plan: Plan, spec: Spec) -> None:
-    """Append the spec's steps in a section of their own, in an order that can be evaluated.
+def add_own_steps(plan: Plan, spec: Spec, leaving: Collection[str] = (), title: str = SECTION) -> None:
+    """Append the spec's steps but for those ``leaving``, in a section of their own, in an order to evaluate them.
 
     Raises
     ------
     SpecError
         Where steps form a circle, or give a value to a symbol that has one.
     """
-    if not spec.steps:
+    if all(step.symbol in leaving for step in spec.steps):
         return
-    plan.section(SECTION)
+    plan.section(title)
     index = len(plan.sections) - 1
     taken = {step.symbol for step in plan.steps} | set(spec.case.inputs) | set(plan.needs)
     steps: list[Step] = []
     faults: list[Fault] = []
     for at, written in enumerate(spec.steps):
+        if written.symbol in leaving:
+            continue
         if written.symbol in taken:
             faults.append(Fault(f"{written.symbol!r} has a value already, from the method or the inputs",
                                 spec.place("steps", at, "symbol"), hint="give the step another symbol"))
@@ -40,6 +43,20 @@ def add_own_steps(plan: Plan, spec: Spec) -> None:
     if faults:
         raise SpecError(faults)
     plan.items += ordered(steps, {step.symbol: _uses(step) for step in steps})
+
+
+def resting_on(spec: Spec, symbols: Collection[str]) -> frozenset[str]:
+    """The engineer's own steps that use one of ``symbols``, directly or by way of another of them."""
+    moving = set(symbols)
+    uses = {}
+    for at, written in enumerate(spec.steps):
+        step = _step(spec, at, written, 0)
+        uses[step.symbol] = {*_uses(step), *(symbols_of(parse(step.formula)) if isinstance(step, RootStep) else ())}
+    grown = True
+    while grown:
+        more = {name for name, used in uses.items() if moving & used} - moving
+        grown, moving = bool(more), moving | more
+    return frozenset(moving & set(uses))
 
 
 def _step(spec: Spec, at: int, written: Any, section: int) -> Step:

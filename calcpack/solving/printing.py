@@ -11,9 +11,9 @@ from __future__ import annotations
 import math
 from collections.abc import Callable, Mapping
 
-from calcpack.errors import NoAnswerError
 from calcpack.formula.tree import Binary, Number, Quantity
 from calcpack.plan.laid import LaidPlan, LaidStep
+from calcpack.solving.case_digits import EXACT, NOTHING, TRIES, WITHIN, CaseDigits
 from calcpack.solving.program import Program
 from calcpack.units import Unit, kind_of_unit
 from calcpack.units.digits import LARGEST_PLAIN, decimals_for, number_text
@@ -22,15 +22,7 @@ LEAST_SIGNIFICANT = 4
 MOST_SIGNIFICANT = 9
 EXACT_SIGNIFICANT = 10
 CONVERTED_SIGNIFICANT = 6
-EXACT = 1e-11
 NOISE = 1e-10
-_TRIES = 24
-WITHIN = 0.95
-"""Largest distance of re-done and printed result, in units of the last place; a little below one for safety."""
-
-
-_NOTHING = (NoAnswerError, ArithmeticError, ValueError, TypeError)
-"""What rounding an operand can come to where the exact value had an answer."""
 
 
 class Printing:
@@ -43,6 +35,7 @@ class Printing:
         self.plan = plan
         self.program = program
         self.values = dict(values)
+        self.rows = CaseDigits(self)
         self.tables = {name: [list(row) for row in rows] for name, rows in program.tables.items()}
         self.units: dict[str, Unit] = {name: one.unit for name, one in plan.inputs.items()}
         self.units |= {step.symbol: step.unit for step in plan.steps}
@@ -50,7 +43,10 @@ class Printing:
         self.trees = {step.symbol: step.tree for step in plan.steps if step.kind == "formula"}
         self.decimals = {name: self._start(name) for name in self.units}
         for name in (*plan.inputs, *(step.symbol for step in plan.steps if isinstance(step.tree, (Number, Quantity)))):
-            self.decimals[name] = self._exact(name)
+            self.decimals[name] = self.exact(self.units[name].from_si(self.values[name]))
+        for step in plan.steps:
+            if step.kind == "cases":
+                self.rows.start(step)
         self._settle()
 
     def shown(self, name: str, value: float | None = None) -> str:
@@ -68,6 +64,8 @@ class Printing:
 
     def redone(self, step: LaidStep) -> float:
         """The step's value from its operands as printed [SI]."""
+        if step.kind == "total":
+            return self.rows.redone_total(step)
         return self._evaluate(step, set(step.uses))
 
     def _magnitude(self, name: str) -> float:
@@ -104,9 +102,8 @@ class Printing:
             return kind.decimals + (0 if magnitude < 1e6 else -1)
         return self._places(name, kind.significant if kind else 5)
 
-    def _exact(self, name: str) -> int:
+    def exact(self, number: float) -> int:
         """The fewest decimals that print an input just as it was given; six digits of one that was converted."""
-        number = self.units[name].from_si(self.values[name])
         most = max(0, decimals_for(number, EXACT_SIGNIFICANT)) if number else 0
         for decimals in range(0, most + 1):
             if math.isclose(float(number_text(number, decimals)), number, rel_tol=EXACT, abs_tol=0.0):
@@ -122,10 +119,17 @@ class Printing:
             for step in reversed(self.plan.steps):
                 if step.kind == "series":
                     self._raise_series(step)
+                elif step.kind == "cases":
+                    self.rows.raise_cells(step)
+                elif step.kind == "total":
+                    self.rows.raise_total(step)
                 elif step.kind not in ("root", "optimum"):
                     self._raise(step)
         for step in checked:
             self._coarsen(step)
+        for step in self.plan.steps:
+            if step.kind == "total":
+                self._coarsen(step)
 
     def _level_pairs(self) -> None:
         """Two values that must agree are printed equally fine, so that the eye can compare them."""
@@ -139,36 +143,37 @@ class Printing:
         if kind is not None and kind.decimals is not None:
             return
         least = self._places(step.symbol, LEAST_SIGNIFICANT)
-        while self.decimals[step.symbol] > least and not self._redoable(step):
+        while self.decimals[step.symbol] > least and not self.redoable(step):
             self.decimals[step.symbol] -= 1
 
     def _coarsen(self, step: LaidStep) -> None:
         """Where operands cannot be printed finely enough, as after long chains of differences, print less."""
         least = self._places(step.symbol, 1)
-        while self.decimals[step.symbol] > least and not self._redoable(step):
+        while self.decimals[step.symbol] > least and not self.redoable(step):
             self.decimals[step.symbol] -= 1
 
     def _raise(self, step: LaidStep) -> None:
         """Give operands more places until the result can be re-done from print."""
-        for _ in range(_TRIES):
-            if self._redoable(step) or not self._refine(
+        for _ in range(TRIES):
+            if self.redoable(step) or not self.refine(
                     step.uses, lambda name: self._moved(step, name), 0.5 * self.place(step.symbol)):
                 return
 
-    def _redoable(self, step: LaidStep) -> bool:
+    def redoable(self, step: LaidStep) -> bool:
         """Whether printed operands give the printed result within one unit of its last place."""
         return abs(self.redone(step) - self.printed(step.symbol)) <= WITHIN * self.place(step.symbol)
 
-    def _refine(self, names: tuple[str, ...], moved: Callable[[str], float], allowed: float) -> bool:
+    def refine(self, names: tuple[str, ...], moved: Callable[[str], float], allowed: float) -> bool:
         """One more place for the operand whose rounding moves the result most; False if none can help."""
-        movers = [(moved(name), name) for name in names if self._can_grow(name)]
+        movers = [(moved(name), name) for name in names if self.can_grow(name)]
         worst = max(movers, default=(0.0, ""))
         if worst[0] <= 0.1 * allowed:
             return False
         self.decimals[worst[1]] += 1
         return True
 
-    def _can_grow(self, name: str) -> bool:
+    def can_grow(self, name: str) -> bool:
+        """Whether another place of a symbol would show more of its value."""
         if name in self.plan.inputs and math.isclose(self.printed(name), self.values[name], rel_tol=EXACT):
             return False
         return self.decimals[name] < self._places(name, MOST_SIGNIFICANT)
@@ -184,13 +189,13 @@ class Printing:
             listed[slots[name]] = self.printed(name)
         try:
             return self.program.functions[step.symbol](listed)
-        except _NOTHING:
+        except NOTHING:
             # A printed operand just across a saturation line, or equal to another: more places will bring it back.
             return math.inf
 
     def _raise_series(self, step: LaidStep) -> None:
         """The same for a table: each cell re-done from the printed cells to its left."""
-        for _ in range(_TRIES):
+        for _ in range(TRIES):
             refined = False
             for column in reversed(step.columns[1:]):
                 refined |= self._raise_column(step, column.symbol)
@@ -203,17 +208,17 @@ class Printing:
         uses = symbols_in(column.tree)
         if all(gap <= WITHIN * self.place(name) for gap in self.cell_gaps(step, name)):
             return False
-        return self._refine(uses, lambda used: max(self.cell_errors(step, name, {used})), 0.5 * self.place(name))
+        return self.refine(uses, lambda used: max(self.cell_errors(step, name, {used})), 0.5 * self.place(name))
 
     def _raise_firsts(self, step: LaidStep) -> None:
         """The first column must not be finer than the formulas of its rows support."""
         first = step.columns[0].symbol
         for index, row in enumerate(self.tables[step.symbol]):
             tree = step.trees[f"row {index}"]
-            for _ in range(_TRIES):
+            for _ in range(TRIES):
                 uses = symbols_in(tree)
                 gap = abs(self.redone_tree(tree, {}) - self.printed(first, row[0]))
-                if gap <= WITHIN * self.place(first) or not self._refine(
+                if gap <= WITHIN * self.place(first) or not self.refine(
                         uses, lambda used, tree=tree, row=row: abs(self._tree_with(tree, {used}) - row[0]),
                         0.5 * self.place(first)):
                     break
@@ -248,7 +253,7 @@ class Printing:
             listed[slots[name]] = self.printed(name, values[name])
         try:
             return self.program.value_of(tree)(listed)
-        except _NOTHING:
+        except NOTHING:
             return math.inf
 
 

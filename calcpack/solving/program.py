@@ -13,9 +13,10 @@ from typing import Any
 from calcpack.errors import Fault, NoAnswerError
 from calcpack.formula.evaluate import Compiled, compiled
 from calcpack.formula.text import to_text
-from calcpack.formula.tree import Node, PropertyCall, symbols_of
+from calcpack.formula.tree import CONSTANTS, Node, PropertyCall, Symbol, symbols_of
 from calcpack.plan.laid import LaidDemand, LaidPlan, LaidStep
-from calcpack.plan.steps import Closing, LookupStep, OptimumStep, RootStep, SeriesStep
+from calcpack.plan.steps import CasesStep, Closing, LookupStep, OptimumStep, RootStep, SeriesStep, TotalStep
+from calcpack.solving.cases import RowError, row_by_row
 from calcpack.solving.roots import Optimum, Root, find_optimum, find_root
 from calcpack.units import read_quantity
 
@@ -33,6 +34,8 @@ class Program:
         Of the last run, the rows of each series.
     held : dict of str to int
         Of the last run, the branch that held in each choice.
+    cases : dict of str to list of list of float
+        Of the last run, all values in each row of each cases step.
     """
 
     def __init__(self, plan: LaidPlan) -> None:
@@ -45,6 +48,8 @@ class Program:
         self.optima: dict[str, Optimum] = {}
         self.tables: dict[str, list[list[float]]] = {}
         self.held: dict[str, int] = {}
+        self.cases: dict[str, list[list[Any]]] = {}
+        self.befores: dict[str, list[Instruction]] = {}
         self.functions: dict[str, Callable[[list[Any]], Any]] = {}
         self.bodies: dict[str, tuple[list[Instruction], Compiled]] = {}
         self.compiled_trees: dict[Node, Callable[[list[Any]], Any]] = {}
@@ -62,11 +67,20 @@ class Program:
         values: list[Any] = [0.0] * (self.spare + 1)
         for name, value in inputs.items():
             values[self.slots[name]] = value
-        self._run(self.block, values)
-        self._require_real(values)
+        self.run_block(self.block, values)
+        self.require_real(values)
         return {name: values[index] for name, index in self.slots.items()}
 
-    def _run(self, block: list[Instruction], values: list[Any]) -> None:
+    def memory(self) -> tuple[dict[str, Any], ...]:
+        """What the last run found besides values: roots, optima, tables, branches, cases."""
+        return tuple(dict(one) for one in (self.roots, self.optima, self.tables, self.held, self.cases))
+
+    def recall(self, memory: tuple[dict[str, Any], ...]) -> None:
+        """Put back what :meth:`memory` gave."""
+        self.roots, self.optima, self.tables, self.held, self.cases = memory
+
+    def run_block(self, block: list[Instruction], values: list[Any]) -> None:
+        """Run instructions on a list of values, in place."""
         slot = 0
         try:
             for slot, function in block:
@@ -76,7 +90,8 @@ class Program:
         except (ArithmeticError, ValueError, TypeError) as error:
             raise NoAnswerError(Fault(_arithmetic(error), hint=_where(self.step_at[slot]), detail=str(error))) from None
 
-    def _require_real(self, values: list[Any]) -> None:
+    def require_real(self, values: list[Any]) -> None:
+        """Raise where a step's value is no finite real number."""
         for slot, step in self.step_at.items():
             value = values[slot]
             if isinstance(value, complex) or not math.isfinite(value):
@@ -101,6 +116,8 @@ class Program:
             if isinstance(item.step, (RootStep, OptimumStep)):
                 body, index = self._block(items, index + 1, item.symbol)
                 function = self._unknown(item, body)
+            elif isinstance(item.step, CasesStep):
+                function = row_by_row(self, item, list(block))
             else:
                 function = self._function(item)
             self.functions[item.symbol] = function
@@ -116,15 +133,20 @@ class Program:
         self.bodies[step.symbol] = (body, equation)
 
         def solve(values: list[Any]) -> float:
+            last = math.nan
+
             def at(trial: float) -> float:
-                values[slot] = trial
-                self._run(body, values)
+                nonlocal last
+                values[slot] = last = trial
+                self.run_block(body, values)
                 found = equation(values)
                 if isinstance(found, complex) or not math.isfinite(found):
                     raise NoAnswerError(Fault("the equation has no real value here"))
                 return found
             solution = self._found(step, at, low(values), high(values))
-            at(solution)
+            if last != solution:
+                # The search ended elsewhere: the body's values must be those at the solution.
+                at(solution)
             return solution
         return solve
 
@@ -143,12 +165,12 @@ class Program:
         body, equation = self.bodies[symbol]
         listed = [*(values[name] for name in self.slots), 0.0]
         listed[self.slots[symbol]] = trial
-        kept = dict(self.roots), dict(self.optima), dict(self.tables), dict(self.held)
+        kept = self.memory()
         try:
-            self._run(body, listed)
+            self.run_block(body, listed)
             return equation(listed)
         finally:
-            self.roots, self.optima, self.tables, self.held = kept
+            self.recall(kept)
 
     def _function(self, step: LaidStep) -> Callable[[list[Any]], Any]:
         match step.step:
@@ -156,6 +178,8 @@ class Program:
                 return self._series(step)
             case LookupStep():
                 return self._lookup(step)
+            case TotalStep():
+                return self._total(step)
         if step.kind == "choice":
             return self._choice(step)
         return self.value_of(step.tree)
@@ -167,8 +191,8 @@ class Program:
         def require(values: list[Any]) -> float:
             if not holds(values):
                 found = ", ".join(f"{name} = {values[self.slots[name]]:.6g}" for name in names)
-                raise NoAnswerError(Fault(demand.text, found=f"{found} (SI)", hint=demand.hint,
-                                          expected=to_text(demand.condition)))
+                raise _UnmetError(Fault(demand.text, found=f"{found} (SI)", hint=demand.hint,
+                                        expected=to_text(demand.condition)))
             return 0.0
         return require
 
@@ -183,6 +207,10 @@ class Program:
             return compiled(tree, self.slots)
         reader = self.plan.fluids[tree.fluid].reader(tree.output, tuple(key for key, _ in tree.given))
         given = [compiled(value, self.slots) for _, value in tree.given]
+        parts = [value for _, value in tree.given]
+        if len(parts) == 2 and all(isinstance(part, Symbol) and part.name not in CONSTANTS for part in parts):
+            i, j = (self.slots[part.name] for part in parts)
+            return lambda v: reader(v[i], v[j])
         if len(given) == 2:
             first, second = given
             return lambda v: reader(first(v), second(v))
@@ -205,12 +233,17 @@ class Program:
         points = [(read_quantity(x).value, read_quantity(y).value) for x, y in step.step.points]
         return lambda v: interpolated(points, of(v))
 
+    def _total(self, step: LaidStep) -> Callable[[list[Any]], float]:
+        pick = self.plan.step(step.step.table).step.columns.index(step.step.column)
+        reduce = REDUCTIONS[step.step.reduction]
+        return lambda v: reduce([row[pick] for row in self.tables[step.step.table]])
+
     def _series(self, step: LaidStep) -> Callable[[list[Any]], float]:
         firsts = [compiled(step.trees[f"row {i}"], self.slots) for i in range(len(step.step.rows))]
         slots = [self.slots[column.symbol] for column in step.columns]
         others = [(slot, self.value_of(column.tree)) for slot, column in zip(slots[1:], step.columns[1:], strict=True)]
         pick = [column.symbol for column in step.columns].index(step.step.column)
-        reduce = _REDUCTIONS[step.step.reduction]
+        reduce = REDUCTIONS[step.step.reduction]
 
         def tabulate(values: list[Any]) -> float:
             rows = []
@@ -224,7 +257,7 @@ class Program:
         return tabulate
 
 
-_REDUCTIONS: dict[str, Callable[[list[float]], float]] = {
+REDUCTIONS: dict[str, Callable[[list[float]], float]] = {
     "min": min, "max": max, "sum": math.fsum, "mean": lambda values: math.fsum(values) / len(values)}
 
 
@@ -247,9 +280,13 @@ def _where(step: LaidStep) -> str:
     return f"see step {step.id}, {step.symbol} = {step.step.formula}"
 
 
+class _UnmetError(NoAnswerError):
+    """A demand that does not hold: its own words are the message, whatever step was being solved."""
+
+
 def _named(error: NoAnswerError, step: LaidStep) -> NoAnswerError:
     """The same error, naming the innermost step that met it."""
-    if any(fault.what.startswith("step ") for fault in error.faults):
+    if isinstance(error, (_UnmetError, RowError)) or any(fault.what.startswith("step ") for fault in error.faults):
         return error
     title = step.step.title[:1].lower() + step.step.title[1:]
     return type(error)(replace(fault, what=f"step {step.id}, {step.symbol} ({title}): {fault.what}")

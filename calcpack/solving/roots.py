@@ -53,8 +53,9 @@ def find_root(residual: Callable[[float], float], low: float, high: float) -> Ro
         a, at_a, b, at_b = _scan(residual, (a, at_a), (b, at_b), trouble_a or trouble_b)
     if at_a == 0.0 or at_b == 0.0:
         return Root(a if at_a == 0.0 else b, a, b, 2)
-    solution, report = brentq(residual, a, b, xtol=RELATIVE * max(abs(a), abs(b)), rtol=1e-13, maxiter=200,
-                              full_output=True)
+    known = {a: at_a, b: at_b}
+    solution, report = brentq(lambda x: known[x] if x in known else residual(x), a, b,
+                              xtol=RELATIVE * max(abs(a), abs(b)), rtol=1e-13, maxiter=200, full_output=True)
     return Root(float(solution), a, b, report.function_calls)
 
 

@@ -8,6 +8,7 @@ from calcpack.spec import model, schema
 from calcpack.spec.drafts import Draft
 from calcpack.spec.formulas import kinds_of
 from calcpack.spec.nodes import Mapping
+from calcpack.spec.safety import QUANTITIES
 from calcpack.spec.scalars import quantity
 from calcpack.spec.source import Source
 
@@ -49,7 +50,23 @@ def _case(written: schema.WrittenCase) -> model.Case:
         method=written.method, options=dict(written.options),
         fluids={role: _fluid(fluid) for role, fluid in written.fluids.items()},
         inputs={symbol: model.Input(symbol=symbol, **_fields(entry))
-                for symbol, entry in written.inputs.items()})
+                for symbol, entry in written.inputs.items()},
+        safety=_safety(written.safety), series=_series(written.series))
+
+
+def _series(written: schema.WrittenSeries | None) -> model.Series | None:
+    if written is None:
+        return None
+    totals = tuple(model.Total(**_fields(one)) for one in written.totals)
+    return model.Series(**{**_fields(written), "inputs": dict(written.inputs), "columns": tuple(written.columns),
+                           "totals": totals})
+
+
+def _safety(written: schema.WrittenSafetyNotes | None) -> model.Safety:
+    if written is None:
+        return model.Safety()
+    values = {one.name: text for one in QUANTITIES if (text := getattr(written, one.name)) is not None}
+    return model.Safety(values, written.room_level, written.source, written.fluid_group)
 
 
 def _fluid(written: schema.WrittenFluid) -> FluidDefinition:
@@ -97,4 +114,5 @@ def _lookup(written: schema.WrittenLookup | None) -> model.Lookup | None:
 def _limit(written: schema.WrittenLimit) -> model.Limit:
     sense: Any = "at least" if written.at_most is None else "at most"
     bound = written.at_most or written.at_least or ""
-    return model.Limit(written.id, written.symbol, sense, bound, written.why, written.source)
+    waiver = None if written.waiver is None else model.Waiver(**_fields(written.waiver))
+    return model.Limit(written.id, written.symbol, sense, bound, written.why, written.source, waiver)

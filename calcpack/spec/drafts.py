@@ -47,11 +47,17 @@ def written_ids(tree: Mapping) -> frozenset[str]:
     return frozenset(name.text for entry in entries if isinstance(name := entry.get("id"), Scalar))
 
 
+SERIES = "case.series"
+"""Stands among the symbols for a series, whose totals are not known before it is laid."""
+
+
 def written_symbols(tree: Mapping) -> frozenset[str]:
-    """The symbols of inputs and steps in the tree."""
+    """The symbols of inputs and steps in the tree, and :data:`SERIES` where it has one."""
     case, steps = tree.get("case"), tree.get("steps")
     inputs = case.get("inputs") if isinstance(case, Mapping) else None
     names = {key.text for key, _ in inputs.entries} if isinstance(inputs, Mapping) else set()
     items = steps.items if isinstance(steps, Listing) else ()
     symbols = (item.get("symbol") for item in items if isinstance(item, Mapping))
+    if isinstance(case, Mapping) and case.get("series") is not None:
+        names.add(SERIES)
     return frozenset(names | {symbol.text for symbol in symbols if isinstance(symbol, Scalar)})

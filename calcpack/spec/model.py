@@ -17,7 +17,7 @@ from calcpack.spec.source import Source
 
 @dataclass(frozen=True, slots=True)
 class Sheet:
-    """The title block; ``p_atm`` in Pa, ``p_atm_text`` as written; ``date`` is ISO."""
+    """The title block; ``p_atm`` in Pa, ``p_atm_text`` and ``T_dead`` as written; ``date`` is ISO."""
 
     number: str
     title: str
@@ -29,6 +29,7 @@ class Sheet:
     date: str | None
     p_atm: float
     p_atm_text: str
+    T_dead: str | None
     units: Literal["si", "us"]
     page: Literal["A4", "Letter"]
     grade: str | None
@@ -70,6 +71,49 @@ class Input:
 
 
 @dataclass(frozen=True, slots=True)
+class Safety:
+    """What cautions alone read: texts of :data:`calcpack.spec.safety.QUANTITIES` by name, where the room lies."""
+
+    values: dict[str, str] = field(default_factory=dict)
+    room_level: str | None = None
+    source: str | None = None
+    fluid_group: str | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Total:
+    """What the column ``of`` comes to, ``by`` its sum, its extreme or its mean."""
+
+    symbol: str
+    title: str
+    of: str
+    by: Literal["sum", "min", "max", "mean"]
+
+
+@dataclass(frozen=True, slots=True)
+class Series:
+    """The rows that the calculation is solved for, and what is summed up of them.
+
+    ``rows`` as written: a season's name, a file's, or a table; ``inputs`` are
+    formula texts by the symbol of the input; ``heat`` and ``power`` are given
+    unless ``account`` is none.
+    """
+
+    rows: str
+    shown: str
+    inputs: dict[str, str]
+    account: Literal["none", "heating", "output"]
+    heat: str | None
+    power: str | None
+    cycling: Literal["none", "water", "air"]
+    backup: Literal["electric", "fuel"]
+    emissions: Literal["no", "yes"]
+    costs: Literal["no", "yes"]
+    columns: tuple[str, ...]
+    totals: tuple[Total, ...]
+
+
+@dataclass(frozen=True, slots=True)
 class Case:
     """What is calculated: the method's name, its options, the fluid of each role, the inputs by symbol."""
 
@@ -77,6 +121,8 @@ class Case:
     options: dict[str, str]
     fluids: dict[str, FluidDefinition]
     inputs: dict[str, Input]
+    safety: Safety = field(default_factory=Safety)
+    series: Series | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -126,6 +172,15 @@ class Step:
 
 
 @dataclass(frozen=True, slots=True)
+class Waiver:
+    """Why a limit may fail, who answers for it, and since when (ISO)."""
+
+    reason: str
+    name: str
+    date: str
+
+
+@dataclass(frozen=True, slots=True)
 class Limit:
     """What must hold: ``symbol`` is ``sense`` ``bound``, a quantity or a symbol as written."""
 
@@ -135,6 +190,7 @@ class Limit:
     bound: str
     why: str
     source: str | None = None
+    waiver: Waiver | None = None
 
     @property
     def key(self) -> str:

@@ -32,6 +32,9 @@ def _spoilt(wrong: Wrong) -> Path | None:
         return None
     if wrong.spoils == "key":
         return wrong.path
+    if wrong.path[:2] == ("case", "series"):
+        # What is left of a series without one of its keys would mean something else.
+        return wrong.path[:2]
     return wrong.path[:_ENTRY_DEPTH.get(str(wrong.path[0]), _USUAL_ENTRY_DEPTH)]
 
 

@@ -8,10 +8,11 @@ import re
 from collections.abc import Callable, Iterable, Iterator
 from itertools import combinations
 
-from calcpack.errors import Fault, nearest
+from calcpack.errors import Fault, UnitError, nearest
 from calcpack.spec.drafts import Draft
 from calcpack.spec.formulas import FORMULA_RULES
 from calcpack.spec.places import Path, Wrong
+from calcpack.spec.safety import QUANTITIES
 from calcpack.spec.scalars import quantity
 from calcpack.spec.schema import Document
 
@@ -93,6 +94,43 @@ def inputs(draft: Draft) -> Iterator[Wrong]:
                 at_key=True, spoils="nothing")
 
 
+def safety(draft: Draft) -> Iterator[Wrong]:
+    """Outside a draft the safety quantities have a source; a gauge pressure is above absolute zero."""
+    written, status = draft.document.case.safety, draft.document.sheet.status
+    if written is None:
+        return
+    if written.source is None and status != "draft" and not draft.is_touched("case", "safety", "source"):
+        yield Wrong(("case", "safety"), Fault(
+            "the safety quantities have no source", expected="the id of a reference, or words",
+            hint=f"only a draft may leave it out, and the status is {status!r}"), at_key=True, spoils="nothing")
+    for one in QUANTITIES:
+        text = getattr(written, one.name)
+        try:
+            if text is not None:
+                one.value(text, draft.p_atm)
+        except UnitError as error:
+            yield Wrong(("case", "safety", one.name), error.faults[0], spoils="key")
+
+
+def series(draft: Draft) -> Iterator[Wrong]:
+    """An account of a season needs the machine's heat and power; an input has one value."""
+    written = draft.document.case.series
+    if written is None:
+        return
+    for name in ("heat", "power"):
+        given = getattr(written, name) is not None
+        if given != (written.account != "none") and not draft.is_touched("case", "series"):
+            what = f"key {name!r} is missing in series" if not given else f"nothing is summed up of {name!r}"
+            yield Wrong(("case", "series", *([name] if given else [])), Fault(what, expected=(
+                f"a symbol for the account {written.account!r}" if not given else "account: heating or output")),
+                at_key=True)
+    for symbol in written.inputs:
+        if symbol in draft.document.case.inputs:
+            yield Wrong(("case", "series", "inputs", symbol), Fault(
+                f"the input {symbol!r} is given twice, for all rows and by row", hint="leave one of the two out"),
+                at_key=True)
+
+
 def limits(draft: Draft) -> Iterator[Wrong]:
     """A limit has one bound."""
     for index, limit in enumerate(draft.document.limits):
@@ -147,10 +185,11 @@ def _sources(draft: Draft) -> Iterator[tuple[Path, str]]:
         *((("steps", index, "lookup", "source"), step.lookup.source)
           for index, step in enumerate(document.steps) if step.lookup is not None),
         *((("limits", index, "source"), limit.source) for index, limit in enumerate(document.limits)),
+        (("case", "safety", "source"), document.case.safety.source if document.case.safety else None),
         *((("assumptions", index, "basis"), entry.basis) for index, entry in enumerate(document.assumptions))]
     return ((path, text) for path, text in places if text is not None)
 
 
 RULES: tuple[Callable[[Draft], Iterator[Wrong]], ...] = (
-    purpose_and_scope, near_baseline, different_people, history, fluids, inputs, *FORMULA_RULES,
+    purpose_and_scope, near_baseline, different_people, history, fluids, inputs, safety, series, *FORMULA_RULES,
     limits, ids_once, sources_exist)

@@ -7,18 +7,21 @@ from __future__ import annotations
 
 from typing import Annotated, Any, Literal
 
-from pydantic import BaseModel, ConfigDict, Field
+from pydantic import BaseModel, ConfigDict, Field, create_model
 
+from calcpack.spec.safety import QUANTITIES, text_type
 from calcpack.spec.words import (
     BoundText,
     Choice,
     ConditionText,
     Date,
     DensityText,
+    FluidGroup,
     Format,
     FormulaText,
     HeatCapacityText,
     Identity,
+    LevelText,
     Line,
     PressureText,
     QuantityText,
@@ -70,6 +73,8 @@ class WrittenSheet(Written):
     date: Date | None = _key("Date of this revision, year-month-day.", "2026-03-31", default=None)
     p_atm: PressureText = _key("Absolute pressure of the surroundings, added to gauge pressures.",
                                "1.01325 bar", "950 mbar", default="1.01325 bar")
+    T_dead: LevelText | None = _key("Temperature of the dead state of the exergy balance, where the method asks for "
+                                    "no T_0; 15 degC if left out.", "15 degC", "59 degF", default=None)
     units: Literal["si", "us"] = _key("Units of print.", "si", default="si")
     page: Literal["A4", "Letter"] = _key("Paper of the PDF.", "A4", default="A4")
     grade: Line | None = _key("Safety class or grade of verification.", default=None)
@@ -121,6 +126,60 @@ class WrittenInput(Written):
     note: Text | None = _key("A remark that is printed.", default=None)
 
 
+class WrittenSafetyNotes(Written):
+    """What the safety quantities share."""
+
+    room_level: Literal["above-ground", "below-ground", "lowest-basement"] | None = _key(
+        "Where the room lies; above ground if left out.", "above-ground", default=None)
+    fluid_group: FluidGroup | None = _key("Group of the working fluid in pressure equipment, if not the register's: "
+                                          "1 dangerous, 2 other.", "1", default=None)
+    source: Line | None = _key("Where the safety quantities are from: ids of references, or words.", "R1",
+                               default=None)
+
+
+WrittenSafety = create_model(
+    "WrittenSafety", __base__=WrittenSafetyNotes, __module__=__name__,
+    __doc__="Quantities that cautions alone read; none is an input of the calculation.",
+    **{one.name: (text_type(one) | None, _key(one.says, one.example, default=None)) for one in QUANTITIES})
+
+
+class WrittenTotal(Written):
+    """What a column of the rows comes to."""
+
+    symbol: Symbol = _key("The total's symbol.", "T_2_max")
+    title: Line = _key("What the total is.", "Hottest discharge of the season")
+    of: Symbol = _key("The column.", "T_2")
+    by: Literal["sum", "min", "max", "mean"] = _key("How the column is taken together.", "max", default="sum")
+
+
+class WrittenSeries(Written):
+    """The calculation solved for each row of a table: the bins of a season, or steps of load."""
+
+    rows: Text = _key("A reference season (average, warmer, colder), a .csv file beside the spec, or the table "
+                      "itself: a heading of symbols with units, then a line a row.", "average", "loads.csv",
+                      "T_out [degC], t_bin [h]\n-5, 120\n5, 900\n")
+    shown: Line = _key("The row whose steps are printed in full.", "2 °C")
+    inputs: dict[Symbol, FormulaText] = _named(
+        "Inputs of the method that differ from row to row, as formulas of the columns and the other inputs.",
+        T_source_in="T_out")
+    account: Literal["none", "heating", "output"] = _key(
+        "What is summed up: nothing but the totals below, a heat pump's season against a heat load, or the yield "
+        "of an engine.", "heating", default="none")
+    heat: Symbol | None = _key("The heat that the machine gives (heating) or takes (output).", "Q_dot_sink",
+                               default=None)
+    power: Symbol | None = _key("The power that the machine draws (heating) or gives (output).", "W_dot_net",
+                                default=None)
+    cycling: Literal["none", "water", "air"] = _key(
+        "Losses of a heat pump that switches on and off, in the form for heated water or for heated air.",
+        default="none")
+    backup: Literal["electric", "fuel"] = _key("What gives the heat that the heat pump lacks.", default="electric")
+    emissions: Literal["no", "yes"] = _key("Whether carbon dioxide is counted, by factors among the inputs.",
+                                           default="no")
+    costs: Literal["no", "yes"] = _key("Whether running costs are counted, by prices among the inputs.", default="no")
+    columns: list[Symbol] = _entries("Further symbols of the sheet that the table shows.")
+    totals: list[WrittenTotal] = _entries("What columns come to.")
+
+
 class WrittenCase(Written):
     """What is calculated."""
 
@@ -132,6 +191,9 @@ class WrittenCase(Written):
     inputs: dict[Symbol, Annotated[WrittenInput, ShortForm("value", ("string", "number"))]] = _named(
         "The design inputs by symbol.", eta_is=0.72,
         T_source_in={"value": "38 degC", "tol": "1.0 K", "source": "R1"})
+    series: WrittenSeries | None = _key("The rows that the calculation is solved for.", default=None)
+    safety: WrittenSafety | None = _key("Quantities that cautions alone read, such as charge and room.",
+                                        {"charge": "12 kg", "room_volume": "300 m³", "source": "R1"}, default=None)
 
 
 class WrittenBranch(Written):
@@ -180,6 +242,14 @@ class WrittenStep(Written):
     note: Text | None = _key("A remark that is printed.", default=None)
 
 
+class WrittenWaiver(Written):
+    """Who lets a limit fail, and why; the sheet prints it on its first page."""
+
+    reason: Text = _key("Why the sheet may stand although the limit fails.", "The maker confirmed 125 °C in writing.")
+    name: Line = _key("Who answers for it.", "A. Example")
+    date: Date = _key("Since when, year-month-day.", "2026-03-31")
+
+
 class WrittenLimit(Written):
     """What must hold, and why."""
 
@@ -190,6 +260,7 @@ class WrittenLimit(Written):
     at_least: BoundText | None = _key("Lower bound: a quantity or a symbol.", "5 K", default=None)
     why: Text = _key("Why it must hold.", "Oil breaks down above this temperature.")
     source: Line | None = _key("Where the bound is from.", "R4", default=None)
+    waiver: WrittenWaiver | None = _key("Who lets the limit fail, and why.", default=None)
 
 
 class WrittenAssumption(Written):

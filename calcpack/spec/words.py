@@ -124,18 +124,21 @@ class Reads:
     """The text reads as a quantity of the ``kind`` [SI], between ``above`` (excluded) and ``most``.
 
     With no kind any unit will do, and gauge pressures too (against an infinite
-    ambient pressure, so that none is refused): both are known later.
+    ambient pressure, so that none is refused): both are known later. With
+    ``gauge`` a pressure may be written as one.
     """
 
-    kind: str | None = None
+    kind: Any = None                 # a name of KINDS, or a Kind
     noun: str | None = None
     above: float = -math.inf
     most: float = math.inf
     expected: str | None = None
+    gauge: bool = False
 
     def __call__(self, text: str) -> str:
+        p_atm = math.inf if self.kind is None or self.gauge else None
         try:
-            value = quantity(_line(text), self.kind, p_atm=None if self.kind else math.inf).value
+            value = quantity(_line(text), self.kind, p_atm=p_atm).value
         except UnitError as error:
             raise told(self.worded(error.faults[0])) from None
         if not self.above < value <= self.most:
@@ -172,6 +175,8 @@ Date = Annotated[str, AfterValidator(_date), _schema(_DATE)]
 Symbol = Annotated[str, AfterValidator(_symbol), _schema(SYMBOL)]
 QuantityText = Annotated[str, AfterValidator(Reads()), _WRITTEN_NUMBER]
 PressureText = Annotated[str, AfterValidator(Reads("pressure", above=0.0, expected="above 0 bar")), _schema()]
+LevelText = Annotated[str, AfterValidator(Reads("temperature", above=0.0, expected="a temperature such as 15 degC")),
+                      _schema()]
 HeatCapacityText = Annotated[str, AfterValidator(Reads(
     "specific entropy", "specific heat capacity", above=0.0, expected="above 0 kJ/(kg·K)")), _schema()]
 DensityText = Annotated[str, AfterValidator(Reads("density", above=0.0, expected="above 0 kg/m³")), _schema()]
@@ -186,6 +191,8 @@ SheetNumber = Annotated[str, AfterValidator(Matches(
     _schema(_NUMBER, ["string", "number"])]
 Identity = Annotated[str, AfterValidator(Matches(
     _IDENTITY, "an id", "a letter, then letters, digits, '.', '_' and '-', such as R1")), _schema(_IDENTITY)]
+FluidGroup = Annotated[str, AfterValidator(Matches("[12]", "a fluid group", "1 or 2")),
+                       _schema("[12]", ["string", "integer"])]
 RevisionMark = Annotated[str, AfterValidator(Matches(
     _REVISION, "a revision", "1 to 3 capital letters without I O Q S X Z, or 1 to 3 digits")),
     _schema(_REVISION, ["string", "integer"])]

@@ -2,7 +2,8 @@
 from __future__ import annotations
 
 import pytest
-from published_values import Deviation, table
+
+from calcpack.verification.published import Deviation, table
 
 PROPERTY = "published value"
 

@@ -5,11 +5,12 @@ import re
 
 import test_facts
 import yaml
-from published_values import FOLDER, companions, read_companion
+
+from calcpack.verification.published import companions, published_folder, read_companion
 
 
 def _read(name: str) -> dict:
-    return yaml.safe_load((FOLDER / name).read_text("utf-8"))
+    return yaml.safe_load((published_folder() / name).read_text("utf-8"))
 
 
 def _reached() -> set[str]:
@@ -33,5 +34,5 @@ def test_what_is_not_reached_has_its_reason() -> None:
 
 
 def test_every_spec_has_its_companion_and_every_companion_its_spec() -> None:
-    specs = {path.stem for path in FOLDER.glob("[0-9]*.yaml") if not path.name.endswith(".expected.yaml")}
+    specs = {path.stem for path in published_folder().glob("[0-9]*.yaml") if not path.name.endswith(".expected.yaml")}
     assert specs == {path.name.removesuffix(".expected.yaml") for path in companions()}

@@ -7,20 +7,15 @@ from __future__ import annotations
 from pathlib import Path
 
 import pytest
-import yaml
-from published_values import FOLDER, Case, cases, value_of
 
 from calcpack.pipeline import solve_spec
+from calcpack.verification.published import Case, cases, method_of, published_folder, value_of
 
-CYCLE = FOLDER / "0_2_slopes_of_the_adiabat.yaml"
-STATION = FOLDER / "5_01_coal_station.yaml"
-
-
-def _method(case: Case) -> str:
-    return yaml.load(case.spec.read_text("utf-8"), Loader=yaml.BaseLoader)["case"]["method"]
+CYCLE = published_folder() / "0_2_slopes_of_the_adiabat.yaml"
+STATION = published_folder() / "5_01_coal_station.yaml"
 
 
-MACHINES = [case for case in cases() if _method(case) in ("organic-rankine", "vapour-compression")]
+MACHINES = [case for case in cases() if method_of(case.spec) in ("organic-rankine", "vapour-compression")]
 
 
 def _solved(spec: Path, symbol: str, **overrides: str) -> float:
@@ -58,7 +53,7 @@ def test_row_0_5_a_kelvin_off_the_cold_side_helps_more_than_one_on_the_hot_side(
 @pytest.mark.parametrize("case", MACHINES, ids=lambda case: case.name)
 def test_row_0_6_no_machine_reaches_the_bound_between_its_own_extremes(case: Case) -> None:
     record = solve_spec(case.spec, case.overrides)
-    if _method(case) == "organic-rankine":
+    if method_of(case.spec) == "organic-rankine":
         levels = [value_of(record, f"T_{state}")[0] for state in "1234"]
         assert 0.0 < value_of(record, "eta_th")[0] < 1.0 - min(levels) / max(levels)
     else:

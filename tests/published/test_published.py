@@ -6,9 +6,9 @@ from dataclasses import astuple
 from pathlib import Path
 
 import pytest
-from published_values import Case, cases, companions, compare, read_companion, read_known
 
 from calcpack.pipeline import solve_spec
+from calcpack.verification.published import Case, cases, companions, compare, read_companion, read_known
 
 
 @pytest.mark.parametrize("case", cases(), ids=lambda case: case.name)

@@ -33,7 +33,9 @@ class Exchanger:
     """A counter-flow exchanger named by ``tag`` (``e`` gives ``dT_min_e``, ``UA_e``).
 
     ``zones`` run from the cold end to the warm end; ``pressure``, ``m_dot`` and
-    ``duty`` are symbols; ``fluid`` is the working fluid's role.
+    ``duty`` are symbols; ``fluid`` is the working fluid's role. Where the
+    pressure falls along the exchanger, ``pressure_at`` is its formula, with
+    ``{h}`` in the place of the working fluid's enthalpy.
     """
 
     title: str
@@ -44,6 +46,7 @@ class Exchanger:
     duty: str
     stream: Stream
     zones: tuple[Zone, ...]
+    pressure_at: str = ""
 
     @property
     def cold_h(self) -> str:
@@ -61,13 +64,20 @@ class Exchanger:
 def profile(plan: Plan, section: Section, it: Exchanger) -> str:
     """The table of temperatures along the exchanger; its value is the smallest difference, the pinch."""
     tag, role = it.tag, it.stream.role
-    h, T, h_stream, T_stream, dT = (f"{name}_{tag}" for name in ("h_x", "T_x", f"h_{role}_x", f"T_{role}_x", "dT_x"))
+    h, T, h_stream, T_stream, dT = (f"{name}_{tag}" for name in ("h_x", "T_x", f"h_{role}_x", f"T_{role}_x",
+                                                                 "dT_x"))
+    p, falling = it.pressure, []
+    if it.pressure_at:
+        p = f"p_x_{tag}"
+        falling = [(p, "Working fluid, pressure", it.pressure_at.replace("{h}", h), None)]
     symbol = section.series(
-        f"dT_min_{tag}", "min", dT, _rows(it.zones), (
+        f"dT_min_{tag}", "min", dT, rows(it.zones), (
             (h, "Working fluid, enthalpy", "", "kJ/kg"),
-            (T, "Working fluid, temperature", f"T({it.fluid}, p={it.pressure}, h={h})", None),
+            *falling,
+            (T, "Working fluid, temperature", f"T({it.fluid}, p={p}, h={h})", None),
             (h_stream, f"{role.capitalize()}, enthalpy", it.stream_enthalpy(h), "kJ/kg"),
-            (T_stream, f"{role.capitalize()}, temperature", f"T({role}, p={it.stream.name('p')}, h={h_stream})", None),
+            (T_stream, f"{role.capitalize()}, temperature", f"T({role}, p={it.stream.name('p')}, h={h_stream})",
+             None),
             (dT, "Difference", it.difference(T_stream, T), "K")),
         f"Smallest temperature difference in the {it.title.lower()}",
         note="Rows at the zone boundaries and between them in equal steps of enthalpy.")
@@ -76,14 +86,16 @@ def profile(plan: Plan, section: Section, it: Exchanger) -> str:
     return symbol
 
 
-def _rows(zones: Sequence[Zone]) -> list[tuple[str, str]]:
-    rows: list[tuple[str, str]] = [(f"{zones[0].name}, cold end", zones[0].cold_h)]
+def rows(zones: Sequence[Zone]) -> list[tuple[str, str]]:
+    """Label and enthalpy of each row of a profile along ``zones``."""
+    result: list[tuple[str, str]] = [(f"{zones[0].name}, cold end", zones[0].cold_h)]
     for zone in zones:
         for piece in range(1, PIECES):
             share = piece / PIECES
-            rows.append((f"{zone.name}, {share:.2f}", f"{zone.cold_h} + {share} * ({zone.warm_h} - {zone.cold_h})"))
-        rows.append((f"{zone.name}, warm end", zone.warm_h))
-    return rows
+            result.append((f"{zone.name}, {share:.2f}",
+                           f"{zone.cold_h} + {share} * ({zone.warm_h} - {zone.cold_h})"))
+        result.append((f"{zone.name}, warm end", zone.warm_h))
+    return result
 
 
 def require_pinch(plan: Plan, it: Exchanger) -> None:
@@ -103,9 +115,10 @@ def conductance(section: Section, it: Exchanger) -> str:
                         f"Log-mean temperature difference, {zone.name}")
         parts.append(section.formula(f"UA_{zone.tag}", f"{Q} / {mean}", f"Conductance of the zone: {zone.name}",
                                      "kW/K"))
-    if len(parts) == 1:
-        return parts[0]
-    return section.formula(f"UA_{it.tag}", " + ".join(parts), f"Conductance of the {it.title.lower()}", "kW/K")
+    whole = parts[0] if len(parts) == 1 else section.formula(
+        f"UA_{it.tag}", " + ".join(parts), f"Conductance of the {it.title.lower()}", "kW/K")
+    section.plan.facts.conductances[f"dT_min_{it.tag}"] = whole
+    return whole
 
 
 def _boundary_differences(section: Section, it: Exchanger) -> list[str]:

@@ -1,0 +1,41 @@
+"""What a fluid's model says without a state to entries that are printed beside it."""
+from __future__ import annotations
+
+from typing import Any
+
+from calcpack.errors import CalcpackError
+from calcpack.fluids.wording import CONSTANTS
+from calcpack.solving.solution import celsius_twin
+from calcpack.units import print_unit, unit
+from calcpack.units.digits import decimals_for, number_text
+
+PRINTED = {"M": "g/mol", "T_crit": "K", "p_crit": "bar", "T_triple": "K", "T_freeze": "K", "T_min": "K",
+           "T_max": "K", "p_max": "bar"}
+"""The constants that a page shows, each with its unit on an SI sheet, in the order of print."""
+SIGNIFICANT = 5
+
+
+def constant_entries(fluid: Any, system: str) -> list[dict[str, Any]]:
+    """The constants of a fluid with their printed values; one that its model cannot find is left out."""
+    found = []
+    for symbol, customary in PRINTED.items():
+        value = _value(fluid, symbol)
+        if value is None:
+            continue
+        shown_in = print_unit(unit(customary).dimension, system)
+        level = customary == "K"
+        decimals = 2 if level else max(0, decimals_for(shown_in.from_si(value), SIGNIFICANT))
+        found.append({"symbol": symbol, "title": CONSTANTS[symbol], "value": float(value), "unit": shown_in.symbol,
+                      "shown": number_text(shown_in.from_si(value), decimals),
+                      "also_shown": celsius_twin(value, 2, system) if level else None})
+    return found
+
+
+def _value(fluid: Any, symbol: str) -> float | None:
+    if symbol not in fluid.constants:
+        return None
+    try:
+        return fluid.reader(symbol, ())()
+    except CalcpackError:
+        # A blend whose critical point is not found has none to print.
+        return None
