@@ -71,7 +71,7 @@ def energy_balances(solution: Solution, record: Record) -> tuple[dict[str, Any],
     entries, faults = [], []
     for index, volume in enumerate(_with_whole(solution), start=1):
         entering, leaving = _energy(solution, volume)
-        dimension = _energy_dimension(solution, volume)
+        dimension = energy_dimension(solution, volume)
         allowed = SHARE * _scale(solution, volume)
         residual = entering - leaving
         shown = printed(solution, residual, dimension)
@@ -102,7 +102,7 @@ def entropy_balances(solution: Solution, record: Record) -> tuple[dict[str, Any]
         if volume.cycle and whole and any(T is None for _, T in (*volume.heat_in, *volume.heat_out)):
             continue
         result = _generated(solution, volume)
-        dimension = _energy_dimension(solution, volume) / TEMPERATURE
+        dimension = energy_dimension(solution, volume) / TEMPERATURE
         allowed = SHARE * _scale(solution, volume) / TYPICAL_T
         limit = f"at least {printed(solution, -allowed, dimension)}"
         if isinstance(result, str):
@@ -194,7 +194,7 @@ def _scale(solution: Solution, volume: Volume) -> float:
                 for flow in (*volume.flows_in, *volume.flows_out)), default=0.0)
 
 
-def _energy_dimension(solution: Solution, volume: Volume) -> Dimension:
+def energy_dimension(solution: Solution, volume: Volume) -> Dimension:
     """Power for a flow process; energy, or energy a kilogram, for a closed cycle's sheet."""
     names = [volume.scale] if volume.scale else []
     names += [*volume.work_in, *volume.work_out, *(name for name, _ in (*volume.heat_in, *volume.heat_out))]

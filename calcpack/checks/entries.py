@@ -40,3 +40,23 @@ def pressure(solution: Solution, value: float, significant: int = 4) -> str:
 def gauge(solution: Solution, value: float, significant: int = 3) -> str:
     """An absolute pressure as a gauge one, above the sheet's atmospheric pressure."""
     return pressure(solution, value - solution.p_atm, significant) + "(g)"
+
+
+def mass(solution: Solution, value: float, significant: int = 4) -> str:
+    """A mass in kg or lb."""
+    return printed(solution, value, unit("kg").dimension, significant)
+
+
+def density(solution: Solution, value: float, significant: int = 3) -> str:
+    """A mass in a volume, in kg/m³ or lb/ft³."""
+    return printed(solution, value, unit("kg/m³").dimension, significant)
+
+
+def air_flow(solution: Solution, value: float, significant: int = 4) -> str:
+    """A flow of air in m³/h or ft³/min."""
+    return printed_freely(value, unit("m³/h" if solution.system == "si" else "ft³/min"), significant)
+
+
+def percent(share: float, significant: int = 3) -> str:
+    """A share as a percentage, such as ``0.0025 %``."""
+    return printed_freely(share, unit("%"), significant)

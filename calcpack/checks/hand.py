@@ -17,6 +17,7 @@ from calcpack.formula.evaluate import value
 from calcpack.formula.parse import parse, parse_condition
 from calcpack.formula.text import printed_quantity, substitute, to_text
 from calcpack.formula.tree import Node, PropertyCall
+from calcpack.solving.cases import solved_row
 from calcpack.solving.program import Instruction, Program, interpolated
 from calcpack.solving.solution import Solution
 from calcpack.units import read_quantity, unit
@@ -59,11 +60,11 @@ def redone_by_hand(solution: Solution, record: Record) -> tuple[dict[str, Any], 
     steps = {one.step for one in results}
     bad = {one.step for one in failed}
     summary = entry(
-        "V-H", "Re-check by hand", "Every step done again from the numbers as printed",
+        "V-H", "Re-done from print", "Every step done again from the numbers as printed",
         f"{len(steps) - len(bad)} of {len(steps)} steps, worst {_places(worst.places)}",
         f"{ALLOWED:g} in the last printed place", "fails" if failed else "ok",
         f"{len(results)} printed results; worst: step {worst.step}, {worst.symbol}: {worst.detail}")
-    return (summary, *(entry(f"V-H-{one.step}", "Re-check by hand", f"Step {one.step}, {one.symbol}",
+    return (summary, *(entry(f"V-H-{one.step}", "Re-done from print", f"Step {one.step}, {one.symbol}",
                              _places(one.places), f"{ALLOWED:g} in the last printed place", "fails", one.detail)
                        for one in failed))
 
@@ -84,6 +85,7 @@ class _Hand:
 
     def __init__(self, solution: Solution, record: Record) -> None:
         self.solution = solution
+        self.record = record
         self.printed = {one["symbol"]: printed_quantity(one["shown"], one["unit"])
                         for one in (*record.data["inputs"], *record.data["steps"])}
         self.trees: dict[str, Node] = {}
@@ -102,6 +104,10 @@ class _Hand:
                 yield self.root(step)
             case "optimum":
                 yield self.optimum(step)
+            case "cases":
+                yield from self.cases(step)
+            case "total":
+                yield self.total(step)
             case "lookup":
                 yield self.compared(step, step["shown"], step["unit"], lambda: self.lookup(step), step["formula"])
             case kind:
@@ -203,6 +209,49 @@ class _Hand:
         cells = [in_unit.to_si(float(row["cells"][at]["shown"])) for row in table["rows"]]
         yield self.compared(step, step["shown"], step["unit"], lambda: _REDUCTIONS[table["reduction"]](cells),
                             step["formula"])
+
+    def cases(self, step: Mapping[str, Any]) -> Iterator[Redone]:
+        """Cells with a formula from the printed cells beside them, the others by solving the row as printed again."""
+        table = step["table"]
+        for index, row in enumerate(table["rows"]):
+            again = self.row(step, index)
+            for column, cell in zip(table["columns"], row["cells"], strict=True):
+                if column["formula"]:
+                    found = self.compared(
+                        step, cell["shown"], column["unit"],
+                        lambda cell=cell, column=column: self.evaluated(cell["numbers"], column["formula"]),
+                        f"in row '{row['label']}': {cell['numbers']}", column["symbol"])
+                else:
+                    found = self.compared(
+                        step, cell["shown"], column["unit"],
+                        lambda again=again, column=column: again[self.solution.program.slots[column["symbol"]]],
+                        f"row '{row['label']}' solved for its printed inputs", column["symbol"])
+                yield found
+        yield self.compared(step, step["shown"], step["unit"], lambda: float(len(table["rows"])), step["formula"])
+
+    def row(self, step: Mapping[str, Any], index: int) -> list[float]:
+        """All values of a row, solved for the cells that take the place of inputs, as printed."""
+        table = step["table"]
+        row, slots = table["rows"][index], self.solution.program.slots
+        fixed = {column["symbol"]: unit(column["unit"]).to_si(float(cell["shown"]))
+                 for column, cell in zip(table["columns"], row["cells"], strict=True)
+                 if column["from"] == "the row" or column["symbol"] in table["bound"]}
+        laid = self.solution.step(step["symbol"])
+        # The row that was solved exactly so is not solved twice.
+        solved = self.solution.program.cases[step["symbol"]][index]
+        if all(math.isclose(number, solved[slots[name]], rel_tol=1e-11) for name, number in fixed.items()):
+            return solved
+        return solved_row(self.solution.program, laid, index, solved, fixed)
+
+    def total(self, step: Mapping[str, Any]) -> Redone:
+        """The sum, or the extreme, of a printed column."""
+        total = step["total"]
+        table = next(one["table"] for one in self.record.data["steps"] if one["id"] == total["table"])
+        at = [column["symbol"] for column in table["columns"]].index(total["column"])
+        in_unit = unit(table["columns"][at]["unit"])
+        cells = [in_unit.to_si(float(row["cells"][at]["shown"])) for row in table["rows"]]
+        return self.compared(step, step["shown"], step["unit"], lambda: _REDUCTIONS[total["reduction"]](cells),
+                             step["formula"])
 
     def root(self, step: Mapping[str, Any]) -> Redone:
         """The residual at the printed solution against what one unit in its last place moves it."""

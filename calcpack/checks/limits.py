@@ -1,6 +1,7 @@
 """What the spec demands to verdicts: value, bound, margin, and whether it holds."""
 from __future__ import annotations
 
+from dataclasses import asdict
 from typing import TYPE_CHECKING, Any
 
 from calcpack.checks.entries import difference
@@ -36,8 +37,16 @@ def _entry(solution: Solution, limit: Limit) -> dict[str, Any]:
             "value": _printed(solution, limit.symbol, value), "bound": shown_bound, "bound_written": limit.bound,
             "margin": _margin(solution, limit.symbol, margin), "margin_percent": percent,
             "margin_percent_reason": reason, "margin_value": float(margin), "bound_value": float(bound),
-            "status": "holds" if holds else "fails", "why": limit.why, "source": limit.source,
+            "status": "holds" if holds else "fails", "verdict": _verdict(holds, limit),
+            "waiver": None if limit.waiver is None else asdict(limit.waiver), "why": limit.why, "source": limit.source,
             "step": None if limit.symbol in solution.plan.inputs else solution.step(limit.symbol).id}
+
+
+def _verdict(holds: bool, limit: Limit) -> str:
+    """'holds', 'fails' or 'waived'; a waiver of a limit that holds changes nothing."""
+    if holds:
+        return "holds"
+    return "fails" if limit.waiver is None else "waived"
 
 
 def _printed(solution: Solution, symbol: str, value: float) -> str:

@@ -1,9 +1,9 @@
-"""A record to its figures: property diagrams, exchanger profiles and the arrangement sketch, as SVG text.
+"""A record to its figures: property diagrams, exchanger profiles, ladder and arrangement sketch, as SVG text.
 
 Nothing is computed here but layout: every number that a figure shows stands in
 the record. :mod:`canvas` holds fonts, sizes and the way to SVG, :mod:`marks` the
 words and heads drawn on a page, :mod:`placing` finds room for labels.
-:mod:`property_diagram`, :mod:`exchanger_profile` and :mod:`arrangement` each draw
+:mod:`property_diagram`, :mod:`exchanger_profile`, :mod:`ladder` and :mod:`arrangement` each draw
 one kind of figure; :mod:`equipment`, :mod:`layout`, :mod:`routing` and
 :mod:`sketch_ink` hold the arrangement's pieces, their places, the lines between
 them and the drawing of both.
@@ -20,11 +20,11 @@ __all__ = ["Figure", "figures"]
 
 
 def figures(record: Mapping[str, Any], width_mm: float = 80.0) -> tuple[Figure, ...]:
-    """Every figure that ``record`` has the lines for: arrangement, property diagrams, exchanger profiles.
+    """Every figure that ``record`` has the lines for: arrangement, property diagrams, exchanger profiles, ladder.
 
     ``width_mm`` is the printed width of a diagram [mm], 60 to 250; letters keep
     their printed size at any width, so a figure is drawn for the width it is
-    shown at. The arrangement has its own width. Equal records give equal bytes.
+    shown at. The arrangement and the ladder have their own width. Equal records give equal bytes.
 
     Raises
     ------

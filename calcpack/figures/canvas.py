@@ -31,6 +31,8 @@ JOIN_DASHES = (0, (3.2, 1.8))
 FAMILY = "calcpack text"
 
 _SETTINGS = {
+    # The stamp of a draft lies behind the page and must show through.
+    "axes.facecolor": "none",
     "font.family": FAMILY,
     "font.size": LETTERS,
     "axes.labelsize": LETTERS,
@@ -107,7 +109,7 @@ def settings() -> Iterator[None]:
 def page(width_mm: float, height_mm: float, layout: str = "none") -> Page:
     """An empty page of the printed size."""
     inches = (width_mm / 25.4, height_mm / 25.4)
-    return Page(figsize=inches, dpi=72, layout=layout, facecolor="white")
+    return Page(figsize=inches, dpi=72, layout=layout, facecolor="none")
 
 
 def settle_layout(drawn: Page) -> None:

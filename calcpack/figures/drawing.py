@@ -10,13 +10,15 @@ from calcpack.errors import CommandError, Fault
 from calcpack.figures.arrangement import arrangement
 from calcpack.figures.exchanger_profile import exchanger_profile
 from calcpack.figures.figure import Figure
+from calcpack.figures.ladder import ladder_figure
 from calcpack.figures.property_diagram import property_diagram
 
 NARROWEST, WIDEST = 60.0, 250.0
+LADDER = "ladder"
 
 
 def draw(record: Mapping[str, Any], width_mm: float) -> tuple[Figure, ...]:
-    """The arrangement, then the property diagrams, then the exchangers' profiles."""
+    """The arrangement, then the property diagrams, the exchangers' profiles and the ladder of losses."""
     if not NARROWEST <= width_mm <= WIDEST:
         raise CommandError(
             Fault(
@@ -32,6 +34,8 @@ def draw(record: Mapping[str, Any], width_mm: float) -> tuple[Figure, ...]:
         exchanger_profile(record, one, names.fresh(f"profile {one['title']}"), width_mm)
         for one in record["exchangers"]
     ]
+    if record.get("ladder"):
+        drawn.append(ladder_figure(record["ladder"], names.fresh(LADDER)))
     return tuple(drawn)
 
 

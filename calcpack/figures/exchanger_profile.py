@@ -51,7 +51,12 @@ def profile_of(record: Mapping[str, Any], exchanger: Mapping[str, Any]) -> Profi
 
 
 def _sides(record: Mapping[str, Any], exchanger: Mapping[str, Any]) -> tuple[str, str, str]:
-    """Names of the hot and the cold side: the stream with this heat flow, and the working fluid."""
+    """Names of the hot and the cold side, and which of them is the stream that heats or cools."""
+    roles = exchanger.get("hot_role"), exchanger.get("cold_role")
+    known = {stream["role"]: stream for stream in record["streams"]}
+    if all(roles) and any(role in known for role in roles):
+        names = [_side_name(record, known, role) for role in roles]
+        return names[0], names[1], "hot" if roles[0] in known else "cold"
     stream = next(
         (
             one
@@ -68,6 +73,12 @@ def _sides(record: Mapping[str, Any], exchanger: Mapping[str, Any]) -> tuple[str
     )
     gives = stream["T_in"]["value"] > stream["T_out"]["value"]
     return (*names, "hot") if gives else (names[1], names[0], "cold")
+
+
+def _side_name(record: Mapping[str, Any], streams: Mapping[str, Mapping[str, Any]], role: str) -> str:
+    if role in streams:
+        return f"{streams[role]['name'].lower()}, {streams[role]['designation']}"
+    return fluid_name(record, role) or "working fluid"
 
 
 def _zones(rows: Sequence[Mapping[str, Any]], q: np.ndarray) -> tuple[tuple[str, float, float], ...]:

@@ -7,6 +7,7 @@ from typing import Any
 from markupsafe import Markup
 
 from calcpack.render import quantities
+from calcpack.render.fluid_names import fluid_page_name
 from calcpack.render.pages import Ground, anchor, link
 
 Data = Mapping[str, Any]
@@ -30,7 +31,8 @@ def purpose(ground: Ground) -> dict[str, Any] | None:
     pressure = sheet["p_atm"]
     return {"purpose": sheet.get("purpose") or "", "scope": sheet.get("scope") or "",
             "grade": sheet.get("grade") or "", "codes": sheet.get("codes") or (),
-            "p_atm": quantities.quantity(pressure["shown"], pressure["unit"])}
+            "p_atm": quantities.quantity(pressure["shown"], pressure["unit"]),
+            "p_atm_written": pressure.get("written") or ""}
 
 
 def inputs(ground: Ground) -> dict[str, Any] | None:
@@ -93,7 +95,8 @@ def fluids(ground: Ground) -> dict[str, Any] | None:
 
 def _fluid(ground: Ground, role: str, one: Data) -> dict[str, Any]:
     return {**one, "anchor": anchor("fluid", role), "number": ground.fluids[role],
-            "title": one.get("title") or role, "range": one.get("range") or ""}
+            "page": "" if ground.for_print else fluid_page_name(one["designation"]), "title": one.get("title") or role,
+            "stated": one.get("stated") or "", "range": one.get("range") or ""}
 
 
 def _facts(ground: Ground, roles: Mapping[str, Data]) -> list[dict[str, Any]]:
@@ -102,12 +105,13 @@ def _facts(ground: Ground, roles: Mapping[str, Data]) -> list[dict[str, Any]]:
     for role, one in roles.items():
         group = groups.setdefault(one["designation"], {
             "designation": one["designation"], "numbers": [],
-            "rows": [_fact(fact) for fact in one.get("facts") or ()]})
+            "rows": [fact_row(fact) for fact in one.get("facts") or ()]})
         group["numbers"].append(ground.fluids[role])
     return [group for group in groups.values() if group["rows"]]
 
 
-def _fact(fact: Data) -> dict[str, Any]:
+def fact_row(fact: Data) -> dict[str, Any]:
+    """A fact of the register, ready for print."""
     return {"quantity": fact["quantity"], "value": quantities.quantity(str(fact["value"]), fact.get("unit") or ""),
             "source": fact.get("source") or "", "confirmed": confirmed_words(fact.get("confirmed")),
             "note": fact.get("note") or ""}

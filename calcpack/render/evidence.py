@@ -1,23 +1,24 @@
-"""What backs a calculation: states, diagrams, checks, cautions, history and machine, ready for print."""
+"""What backs a calculation: states, diagrams, checks, constants and history, ready for print."""
 from __future__ import annotations
 
-import hashlib
 from collections.abc import Mapping, Sequence
+from dataclasses import replace
 from typing import Any
 
-from calcpack.record import Record
+from markupsafe import Markup
+
+from calcpack.formula.tree import Quantity, walk
 from calcpack.render import quantities
-from calcpack.render.basis import confirmed_words, is_sketch
+from calcpack.render.basis import is_sketch
+from calcpack.render.losses import is_ladder
 from calcpack.render.pages import Ground, anchor, link
+from calcpack.render.working import formulas_of
 
 Data = Mapping[str, Any]
 
 STATE_COLUMNS = (("T", "T"), ("p", "p"), ("h", "h"), ("s", "s"), ("v", "v"))
 STREAM_COLUMNS = (("m_dot", "m_dot"), ("T_in", "T_in"), ("T_out", "T_out"), ("p", "p"), ("h_in", "h_in"),
                   ("h_out", "h_out"), ("Q_dot", "Q_dot"))
-DEFER = ("A caution states what the numbers of this sheet suggest; it does not replace the codes, standards and "
-         "regulations in force at the place of use, nor the judgement of a licensed engineer. Where they differ, "
-         "those hold.")
 
 
 def states(ground: Ground) -> dict[str, Any] | None:
@@ -39,34 +40,26 @@ def _table(entries: Sequence[Data], columns: Sequence[tuple[str, str]], heads: A
     used = [(key, name) for key, name in columns if any(one.get(key) for one in entries)]
     if not entries:
         return None
-    rows = [{**heads(one), "cells": [quantities.shown(one.get(key)) for key, _ in used]} for one in entries]
     units = [next(one[key]["unit"] for one in entries if one.get(key)) for key, _ in used]
+    rows = [{**heads(one), "cells": [_cell(one.get(key), unit) for (key, _), unit in zip(used, units, strict=True)]}
+            for one in entries]
     return {"columns": [{"symbol": quantities.symbol(name), "unit": quantities.unit(text)}
                         for (_, name), text in zip(used, units, strict=True)],
             "rows": rows, "many_fluids": len({row.get("fluid") for row in rows}) > 1}
 
 
+def _cell(one: Data | None, column_unit: str) -> quantities.Shown | None:
+    """A cell of a table; one in another unit than its column says so itself."""
+    cell = quantities.shown(one)
+    if cell is None or one is None or one["unit"] == column_unit:
+        return cell
+    return replace(cell, number=quantities.quantity(str(one["shown"]), one["unit"]))
+
+
 def diagrams(ground: Ground) -> dict[str, Any] | None:
-    """The figures that are not the arrangement sketch."""
-    shown = [figure for figure in ground.figures if not is_sketch(figure)]
+    """The figures but for the arrangement sketch and the ladder, which stand in parts of their own."""
+    shown = [figure for figure in ground.figures if not (is_sketch(figure) or is_ladder(figure))]
     return {"figures": shown} if shown else None
-
-
-SHARES = ("g_rev", "g_Carnot")
-BOUND_SYMBOLS = ("COP_rev", "COP_Carnot", "eta_rev", "eta_Carnot", "W_dot_rev", "W_dot_rev_taken", "COP", "eta_th",
-                 "eta_net", "eta_real", "eta_ex", "W_dot_net", "g_rev", "g_Carnot")
-"""The symbols that a method names the bound and the figure set against it by, in the order of print."""
-
-
-def bound(ground: Ground) -> dict[str, Any] | None:
-    """The reversible bound and the share of it that is reached, where the record has both."""
-    steps = {one["symbol"]: one for one in ground.items("steps")}
-    if not any(name in steps for name in SHARES):
-        return None
-    rows = [{"symbol": quantities.symbol(name), "title": steps[name]["title"], "value": quantities.shown(steps[name]),
-             "where": link(anchor("step", steps[name]["id"]), steps[name]["id"])}
-            for name in BOUND_SYMBOLS if name in steps]
-    return {"rows": rows}
 
 
 LONG_DETAIL = 40
@@ -89,30 +82,6 @@ def verification(ground: Ground) -> dict[str, Any] | None:
             "count": len(rows), "fails": sum(row["fails"] for row in rows)}
 
 
-def cautions(ground: Ground) -> dict[str, Any] | None:
-    """Triggered cautions by hazard; then what was evaluated, then what was not."""
-    rows = [_caution(ground, one) for one in ground.items("cautions")]
-    if not rows:
-        return None
-    groups: dict[str, list[dict[str, Any]]] = {}
-    for row in rows:
-        if row["status"] == "triggered":
-            groups.setdefault(row["hazard"], []).append(row)
-    defers = list(dict.fromkeys(one["defer"] for one in ground.items("cautions") if one.get("defer")))
-    return {"triggered": [{"title": title, "rows": found} for title, found in groups.items()],
-            "count": sum(len(found) for found in groups.values()),
-            "quiet": [row for row in rows if row["status"] == "not triggered"],
-            "unknown": [row for row in rows if row["status"] == "not evaluated"], "defers": defers or [DEFER]}
-
-
-def _caution(ground: Ground, one: Data) -> dict[str, Any]:
-    return {"id": one["id"], "anchor": anchor("caution", one["id"]), "hazard": one["hazard"],
-            "topic": one.get("topic") or "", "text": one["text"], "value": ground.prose(one.get("value")),
-            "threshold": ground.prose(one.get("threshold")), "source": ground.sourced(one.get("source")),
-            "confirmed": confirmed_words(one.get("confirmed")), "status": one["status"],
-            "reason": ground.prose(one.get("reason"))}
-
-
 def nomenclature(ground: Ground) -> dict[str, Any] | None:
     """Every symbol of inputs, steps and tables, in alphabetical order."""
     known: dict[str, tuple[str, str, str, str]] = {}
@@ -126,7 +95,20 @@ def nomenclature(ground: Ground) -> dict[str, Any] | None:
     rows = [{"symbol": quantities.symbol(name), "title": quantities.titled(name, title), "unit": quantities.unit(unit),
              "where": link(target, word)}
             for name, (title, unit, target, word) in sorted(known.items(), key=lambda one: _order(one[0]))]
-    return {"rows": rows} if rows else None
+    return {"rows": rows, "constants": _constants(ground)} if rows else None
+
+
+def _constants(ground: Ground) -> list[dict[str, Any]]:
+    """The quantities that stand in formulas as numbers, each with the steps it stands in."""
+    found: dict[tuple[str, str], list[str]] = {}
+    for step in ground.items("steps"):
+        for node in formulas_of(step):
+            for part in walk(node):
+                if isinstance(part, Quantity):
+                    found.setdefault((part.text, part.unit), []).append(step["id"])
+    return [{"value": quantities.quantity(text, unit),
+             "where": Markup(", ").join(link(anchor("step", name), name) for name in dict.fromkeys(ids))}
+            for (text, unit), ids in found.items()]
 
 
 def _order(name: str) -> tuple[str, str]:
@@ -139,18 +121,3 @@ def history(ground: Ground) -> dict[str, Any] | None:
     sheet = ground.record["sheet"]
     return {"rows": [{**one, "by": one.get("by") or "", "current": one["revision"] == sheet["revision"]}
                      for one in ground.items("revisions")]}
-
-
-def machine(ground: Ground) -> dict[str, Any] | None:
-    """What computed the sheet: versions, hashes, command."""
-    engine = ground.record["engine"]
-    libraries = [f"{name} {version}" for name, version in sorted(engine["libraries"].items())]
-    return {"engine": engine, "libraries": libraries, "spec_file": ground.record["spec_file"],
-            "spec_sha256": ground.record["spec_sha256"], "record_sha256": record_hash(ground.record),
-            "tolerance": quantities.prose(engine.get("root_tolerance")),
-            "iterated": any(one["kind"] == "root" for one in ground.items("steps"))}
-
-
-def record_hash(record: Data) -> str:
-    """The SHA-256 of the record's file, in hexadecimal."""
-    return hashlib.sha256(Record(record).to_json().encode()).hexdigest()

@@ -8,6 +8,7 @@ from typing import Any
 from markupsafe import Markup
 
 from calcpack.render import quantities
+from calcpack.render.cautions import usual_limits
 from calcpack.render.pages import Ground, anchor, link
 
 Data = Mapping[str, Any]
@@ -24,6 +25,7 @@ class Standing:
     failed_limits: tuple[str, ...]
     failed_checks: tuple[str, ...]
     stamp: tuple[str, ...]
+    waived_limits: tuple[str, ...] = ()
 
     @property
     def limits_words(self) -> str:
@@ -38,9 +40,15 @@ def standing(record: Data) -> Standing:
     stamp = [STAMPS[status]] if status in STAMPS else (["DRAFT"] if status == "draft" else [])
     if holds and status not in STAMPS:
         stamp.append("HOLD OPEN")
-    return Standing(holds, tuple(one["id"] for one in record.get("limits") or () if one["status"] == "fails"),
+    limits = record.get("limits") or ()
+    return Standing(holds, tuple(one["id"] for one in limits if one["status"] == "fails" and not one.get("waiver")),
                     tuple(one["id"] for one in record.get("checks") or () if one["status"] == "fails"),
-                    tuple(stamp))
+                    tuple(stamp), tuple(one["id"] for one in limits if is_waived(one)))
+
+
+def is_waived(limit: Data) -> bool:
+    """Whether a limit fails and somebody answers for it."""
+    return limit["status"] == "fails" and bool(limit.get("waiver"))
 
 
 def counted(count: int, one: str, several: str) -> str:
@@ -74,13 +82,16 @@ def results(ground: Ground) -> dict[str, Any] | None:
     """The results in the spec's order, and every limit with its margin."""
     entries = sorted(ground.record["results"].items(), key=lambda item: item[1].get("order", 0))
     limits = [limit_row(ground, one) for one in ground.items("limits")]
+    usual = usual_limits(ground)
     return {"rows": [_result(ground, symbol, one) for symbol, one in entries], "limits": limits,
-            "fails": sum(row["fails"] for row in limits)}
+            "fails": sum(row["fails"] for row in limits), "waived": sum(row["waived"] for row in limits),
+            "usual": usual, "outside": sum(row["status"] == "outside" for row in usual)}
 
 
 def _result(ground: Ground, symbol: str, one: Data) -> dict[str, Any]:
     target = ground.anchors.get(symbol)
-    verdicts = [{"id": limit["id"], "anchor": anchor("limit", limit["id"]), "fails": limit["status"] == "fails"}
+    verdicts = [{"id": limit["id"], "anchor": anchor("limit", limit["id"]), "waived": is_waived(limit),
+                 "fails": limit["status"] == "fails" and not is_waived(limit)}
                 for limit in ground.items("limits") if limit["symbol"] == symbol]
     where = link(target, one["step"] or "input") if target else Markup("")
     return {"mark": ground.marks.symbol(symbol), "symbol": quantities.symbol(symbol),
@@ -95,4 +106,5 @@ def limit_row(ground: Ground, one: Data) -> dict[str, Any]:
             "value": quantities.prose(one["value"]), "bound": quantities.prose(one["bound"]),
             "margin": quantities.prose(one.get("margin")), "percent": quantities.prose(one.get("margin_percent")),
             "why": one.get("why") or "", "source": ground.sourced(one.get("source")),
-            "fails": one["status"] == "fails"}
+            "fails": one["status"] == "fails" and not is_waived(one), "waived": is_waived(one),
+            "waiver": one.get("waiver")}

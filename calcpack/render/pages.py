@@ -18,6 +18,23 @@ NOT_FOR_ANCHORS = re.compile(r"[^A-Za-z0-9._-]")
 
 
 @dataclass(frozen=True, slots=True)
+class Extras:
+    """What is known of a sheet beside its record.
+
+    ``verification`` is the record of a run of the published checks;
+    ``checklist`` the points of the sheet and ``anew`` its results reckoned
+    anew from the page, both empty until the page has been looked at.
+    """
+
+    verification: Data | None = None
+    checklist: tuple[Any, ...] = ()
+    anew: tuple[Any, ...] = ()
+
+
+NO_EXTRAS = Extras()
+
+
+@dataclass(frozen=True, slots=True)
 class Ground:
     """What the parts read: the record, its comparison, its figures, and who is where.
 
@@ -36,6 +53,7 @@ class Ground:
     used_by: Mapping[str, tuple[str, ...]]
     fluids: Mapping[str, str]
     sources: Mapping[str, str]
+    extras: Extras = NO_EXTRAS
 
     def items(self, key: str) -> Sequence[Data]:
         """A list of the record; empty where the record has none."""
@@ -57,7 +75,8 @@ class Ground:
         return Markup("").join([*pieces, quantities.prose(text[end:])])
 
 
-def ground_of(record: Data, comparison: Data | None, figures: Sequence[Any], for_print: bool) -> Ground:
+def ground_of(record: Data, comparison: Data | None, figures: Sequence[Any], for_print: bool,
+              extras: Extras = NO_EXTRAS) -> Ground:
     """The ground of one sheet."""
     anchors = {one["symbol"]: anchor("input", one["symbol"]) for one in record["inputs"]}
     for step in record["steps"]:
@@ -71,7 +90,8 @@ def ground_of(record: Data, comparison: Data | None, figures: Sequence[Any], for
     sources |= {one["id"]: anchor("assumption", one["id"]) for one in record.get("assumptions") or ()}
     return Ground(record, comparison, tuple(figures), for_print, marks_of(record, comparison), anchors,
                   {symbol: tuple(ids) for symbol, ids in used.items()},
-                  {role: f"F{number}" for number, role in enumerate(_roles(record), start=1)}, sources)
+                  {role: f"F{number}" for number, role in enumerate(_roles(record), start=1)}, sources,
+                  extras)
 
 
 def _roles(record: Data) -> list[str]:

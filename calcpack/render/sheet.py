@@ -9,9 +9,9 @@ from typing import TYPE_CHECKING, Any
 
 from markupsafe import Markup
 
-from calcpack.render import basis, changes, evidence, outcome, working
+from calcpack.render import basis, cautions, changes, evidence, formal, losses, outcome, tolerances, working
 from calcpack.render.assets import templates_folder
-from calcpack.render.pages import Ground, anchor, ground_of
+from calcpack.render.pages import NO_EXTRAS, Extras, Ground, anchor, ground_of
 
 if TYPE_CHECKING:
     from jinja2 import Environment
@@ -43,27 +43,29 @@ PARTS = (
     Part("fluids", "Fluids", basis.fluids),
     Part("states", "States and streams", evidence.states),
     Part("diagrams", "Diagrams", evidence.diagrams),
-    Part("bound", "Reversible bound and what is reached of it", evidence.bound),
+    Part("bound", "From the reversible bound to the net figure", losses.bound),
     Part("verification", "Verification", evidence.verification),
-    Part("cautions", "Cautions", evidence.cautions),
+    Part("uncertainty", "Uncertainty and sensitivity", tolerances.uncertainty),
+    Part("cautions", "Cautions", cautions.cautions),
     Part("nomenclature", "Nomenclature", evidence.nomenclature),
     Part("history", "Revision history", evidence.history),
-    Part("machine", "How it was computed", evidence.machine),
+    Part("checklist", "Checklist", formal.checklist),
+    Part("machine", "How it was computed", formal.machine),
 )
 """The parts of a sheet in the order of print."""
 
 
 def sheet_html(record: Record, *, comparison: Data | None = None, figures: Sequence[Any] = (),
-               for_print: bool = False, pdf: bool = False) -> str:
+               for_print: bool = False, pdf: bool = False, extras: Extras = NO_EXTRAS) -> str:
     """The sheet as one HTML page.
 
     ``figures`` are those of :mod:`calcpack.figures`. With ``for_print`` the
     page is what the PDF engine reads: figures inside it, no MathML, style
     sheets beside the templates. Without, figures lie in ``figures/`` and
     style sheets in ``assets/``, relative to the page, and ``pdf`` says
-    whether the sheet's PDF lies beside it.
+    whether the sheet's PDF lies beside it. ``extras`` are what the record does not hold.
     """
-    ground = ground_of(record.data, comparison, figures, for_print)
+    ground = ground_of(record.data, comparison, figures, for_print, extras)
     parts = [{"name": part.name, "anchor": f"part-{part.name}", "title": part.title, "content": content}
              for part in PARTS if (content := part.build(ground)) is not None]
     stem = file_stem(record.number)

@@ -12,33 +12,47 @@ import tempfile
 from collections.abc import Callable, Iterator, Mapping, Sequence
 from concurrent.futures import ProcessPoolExecutor
 from contextlib import contextmanager
+from dataclasses import dataclass
 from pathlib import Path, PurePosixPath
 from typing import Any
 
 from calcpack.errors import CommandError, Fault
+from calcpack.points import Point, points, unmet
 from calcpack.record import Record
 from calcpack.render.assets import copy_assets
+from calcpack.render.fluid_page import fluid_pages
+from calcpack.render.pages import Extras
 from calcpack.render.pdf import write_pdf
 from calcpack.render.register import register_html
 from calcpack.render.sheet import file_stem, picture_name, sheet_html
+from calcpack.review.from_print import require, require_same
+from calcpack.verification.statement import statement
 
 MANIFEST = ".calcpack-site.json"
-Item = tuple[Record, Mapping[str, Any] | None]
+Data = Mapping[str, Any]
+Item = tuple[Record, Data | None]
 Progress = Callable[[str], None]
 
 
+@dataclass(frozen=True, slots=True)
+class Site:
+    """What a build left: all files, sorted, and of each sheet the points that it does not meet."""
+
+    files: tuple[Path, ...]
+    unmet: Mapping[str, tuple[Point, ...]]
+
+
 def build_site(items: Sequence[Item], folder: Path, *, pdf: bool = True, jobs: int = 1,
-               progress: Progress | None = None) -> list[Path]:
+               progress: Progress | None = None, verifications: Mapping[str, Data] | None = None) -> Site:
     """Builds the site of the given records, each with its comparison or None.
+
+    Every page is read again and done again from its print before anything is
+    moved into place. ``verifications`` gives the record of a run of the
+    published checks by the number of the sheet that it goes with.
 
     ``jobs`` processes share the sheets; what is written is the same for any
     number of them. ``progress`` is called with each sheet's number as it is
     done. Files of a former build that belong to no sheet now are removed.
-
-    Returns
-    -------
-    list[Path]
-        All files of the site, sorted.
 
     Raises
     ------
@@ -46,14 +60,19 @@ def build_site(items: Sequence[Item], folder: Path, *, pdf: bool = True, jobs: i
         For two sheets of one number, or a folder that cannot be written to.
     MissingPartError
         When the PDF engine is missing; with ``pdf=False`` it is not needed.
+    BrokenPrintError
+        For a page whose numbers cannot be had from what it prints.
     """
     stems = _stems(items)
     with _aside(folder) as aside:
         names = ["index.html", *(f"assets/{name.as_posix()}" for name in copy_assets(aside / "assets"))]
-        for record, written in _sheets(items, aside, pdf, jobs):
+        open_points = {}
+        for record, (written, points_open) in _sheets(items, aside, pdf, jobs, verifications or {}):
             names += written
+            open_points[record.number] = points_open
             if progress is not None:
                 progress(record.number)
+        names += _fluid_pages(items, stems, aside)
         index = register_html([record for record, _ in items], stems, pdf=pdf)
         (aside / "index.html").write_text(index, "utf-8", newline="\n")
         names = sorted(names)
@@ -61,7 +80,7 @@ def build_site(items: Sequence[Item], folder: Path, *, pdf: bool = True, jobs: i
         former = _former(folder)
         _move(aside, folder, names)
         _remove(folder, former - set(names))
-    return [folder / name for name in names]
+    return Site(tuple(folder / name for name in names), open_points)
 
 
 def _stems(items: Sequence[Item]) -> list[str]:
@@ -77,9 +96,10 @@ def _stems(items: Sequence[Item]) -> list[str]:
     return [file_stem(record.number) for record, _ in items]
 
 
-def _sheets(items: Sequence[Item], aside: Path, pdf: bool, jobs: int) -> Iterator[tuple[Record, list[str]]]:
-    """Writes the sheets, in order; gives each record with the names of its files."""
-    tasks = [(record, comparison, aside, pdf) for record, comparison in items]
+def _sheets(items: Sequence[Item], aside: Path, pdf: bool, jobs: int,
+            verifications: Mapping[str, Data]) -> Iterator[tuple[Record, Written]]:
+    """Writes the sheets, in order; gives each record with the names of its files and its open points."""
+    tasks = [(record, comparison, aside, pdf, verifications.get(record.number)) for record, comparison in items]
     if jobs <= 1 or len(tasks) <= 1:
         for task in tasks:
             yield task[0], write_sheet(task)
@@ -93,21 +113,60 @@ def _sheets(items: Sequence[Item], aside: Path, pdf: bool, jobs: int) -> Iterato
             raise
 
 
-def write_sheet(task: tuple[Record, Mapping[str, Any] | None, Path, bool]) -> list[str]:
-    """One sheet's page, record, figures and PDF into a folder; their names, relative to it."""
-    record, comparison, folder, pdf = task
-    stem = file_stem(record.number)
-    drawn = draw(record)
-    files = {f"{stem}.html": sheet_html(record, comparison=comparison, figures=drawn, pdf=pdf),
-             f"{stem}.json": record.to_json()}
+Written = tuple[list[str], tuple[Point, ...]]
+"""The names of a sheet's files, and the points that it does not meet."""
+
+
+def write_sheet(task: tuple[Record, Data | None, Path, bool, Data | None]) -> Written:
+    """One sheet's page, record, figures and PDF into a folder; names are relative to it.
+
+    Raises
+    ------
+    BrokenPrintError
+        Where the page's numbers cannot be had from what it prints.
+    """
+    record, comparison, folder, pdf, verification = task
+    stem, drawn = file_stem(record.number), draw(record)
+    pages = judged_pages(record, comparison, drawn, pdf, verification)
+    files = {f"{stem}.html": pages.screen, f"{stem}.json": record.to_json()}
     files |= {picture_name(figure, stem): figure.svg_text for figure in drawn}
     for name, text in files.items():
         (folder / name).parent.mkdir(parents=True, exist_ok=True)
         (folder / name).write_text(text, "utf-8", newline="\n")
     if pdf:
-        printed = sheet_html(record, comparison=comparison, figures=drawn, for_print=True)
-        write_pdf(printed, folder / f"{stem}.pdf", record)
-    return [*files, *([f"{stem}.pdf"] if pdf else [])]
+        write_pdf(pages.paper, folder / f"{stem}.pdf", record)
+    return [*files, *([f"{stem}.pdf"] if pdf else [])], unmet(pages.points)
+
+
+@dataclass(frozen=True, slots=True)
+class Pages:
+    """The page of a sheet for the screen and for the PDF engine (empty without one), and its points."""
+
+    screen: str
+    paper: str
+    points: tuple[Point, ...]
+
+
+def judged_pages(record: Record, comparison: Data | None, drawn: tuple[Any, ...], pdf: bool,
+                 verification: Data | None) -> Pages:
+    """The finished pages: made once to be done again and judged, then with the list of points that came out."""
+    first = sheet_html(record, comparison=comparison, figures=drawn, pdf=pdf, extras=Extras(verification))
+    redone = require(first, record.number)
+    listed = points(record.data, first, redone, comparison, statement(record.data, verification))
+    extras = Extras(verification, listed, redone.whole)
+    screen = sheet_html(record, comparison=comparison, figures=drawn, pdf=pdf, extras=extras)
+    paper = sheet_html(record, comparison=comparison, figures=drawn, for_print=True, extras=extras) if pdf else ""
+    require_same(first, [page for page in (screen, paper) if page], record.number)
+    return Pages(screen, paper, listed)
+
+
+def _fluid_pages(items: Sequence[Item], stems: Sequence[str], aside: Path) -> list[str]:
+    """Writes a page for each fluid of the sheets; their names."""
+    pages = fluid_pages([record for record, _ in items], stems)
+    for name, text in pages.items():
+        (aside / name).parent.mkdir(parents=True, exist_ok=True)
+        (aside / name).write_text(text, "utf-8", newline="\n")
+    return list(pages)
 
 
 def draw(record: Record) -> tuple[Any, ...]:

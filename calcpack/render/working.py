@@ -11,6 +11,7 @@ from calcpack.formula.mathml import step_mathml
 from calcpack.formula.tree import Node, Number, PropertyCall, Quantity, walk
 from calcpack.formula.typeset import step_equation_html
 from calcpack.render import quantities
+from calcpack.render.case_table import cases, total
 from calcpack.render.pages import Ground, anchor, link
 
 Data = Mapping[str, Any]
@@ -102,13 +103,25 @@ def _result(step: Data) -> Markup:
 
 def _root(ground: Ground, step: Data) -> tuple[Markup, dict[str, Any]]:
     root = step["root"]
-    ends = [_end(root[f"{end}_formula"], root[end]) for end in ("low", "high")]
+    ends = _ends(root)
     closing = root["closed_by"]
     closing = [closing] if isinstance(closing, str) else closing
     return _result(step), {"zero": quantities.formula(root["equation"]), "ends": ends,
                            "unknown": quantities.symbol(root["unknown"]),
-                           "residual": quantities.written(root["residual"]), "count": root["iterations"],
+                           "residual": quantities.written(root.get("residual_below") or root["residual"]),
+                           "below": bool(root.get("residual_below")), "count": root["iterations"],
                            "closing": _step_links(closing)}
+
+
+def _ends(found: Data) -> list[Markup]:
+    """The ends of a bracket; one that was moved inwards with where it was laid down."""
+    ends = []
+    for name in ("low", "high"):
+        formula, stated = found[f"{name}_formula"], found.get(f"{name}_stated")
+        ends.append(Markup("{} (inwards of {} = {})").format(
+            quantities.written(found[name]), quantities.formula(formula), quantities.written(stated))
+            if stated else _end(formula, found[name]))
+    return ends
 
 
 def _end(formula: str, value: str) -> Markup:
@@ -117,6 +130,21 @@ def _end(formula: str, value: str) -> Markup:
     if node is None or isinstance(node, Number | Quantity):
         return quantities.written(value)
     return Markup("{} = {}").format(quantities.formula(formula), quantities.written(value))
+
+
+def _optimum(ground: Ground, step: Data) -> tuple[Markup, dict[str, Any]]:
+    found = step["optimum"]
+    unit, objective_unit = step["unit"], found["objective_unit"]
+    points = {point["x"]: point for point in (*found["curve"], found["optimum"])}
+    curve = [{"x": quantities.number(point["x"]), "y": quantities.number(point["y"]),
+              "best": point is found["optimum"]} for point in sorted(points.values(), key=lambda one: one["x_value"])]
+    return _result(step), {
+        "objective": quantities.formula(found["objective"]), "sense": found["sense"],
+        "ends": _ends(found),
+        "unknown": quantities.symbol(found["unknown"]), "count": found["iterations"], "curve": curve,
+        "unit": quantities.unit(unit), "objective_unit": quantities.unit(objective_unit),
+        "best": quantities.quantity(found["optimum"]["y"], objective_unit),
+        "closing": _step_links(found["closed_by"])}
 
 
 def _choice(ground: Ground, step: Data) -> tuple[Markup, dict[str, Any]]:
@@ -156,12 +184,19 @@ def _series(ground: Ground, step: Data) -> tuple[Markup, dict[str, Any]]:
     names = [one["symbol"] for one in table["columns"]]
     at = names.index(table["column"]) if table["column"] in names else len(names) - 1
     worked = _worked_row(step, at)
-    rows = [{"label": row["label"], "worked": row is worked,
+    rows = [{"label": row["label"], "worked": row is worked, "made": _made(row, table["columns"][0]),
              "cells": [quantities.number(cell["shown"]) for cell in row["cells"]]} for row in table["rows"]]
     lines = [_line(cell, plain) for cell, plain in zip(worked["cells"], table["columns"], strict=True)]
     result = Markup("{} of {}: {}").format(_REDUCTIONS.get(table["reduction"], table["reduction"]),
                                            quantities.symbol(names[at]), _result(step))
     return result, {"columns": columns, "rows": rows, "worked": worked["label"], "lines": lines, "at": at}
+
+
+def _made(row: Data, first: Data) -> Markup:
+    """The formula of a row's first cell; empty where the cell is the value as given."""
+    formula = quantities.tree(row.get("formula") or "")
+    given = {"shown": row["cells"][0]["shown"], "unit": first["unit"]}
+    return Markup("") if formula is None or _says_no_more(formula, given) else quantities.formula(row["formula"])
 
 
 def _line(cell: Data, column: Data) -> Markup:
@@ -196,15 +231,24 @@ def _step_links(ids: Any) -> Markup:
     return Markup(", ").join(link(anchor("step", name), name) for name in ids)
 
 
+def formulas_of(step: Data) -> list[Node]:
+    """The formulas and conditions that a step is printed with."""
+    table, found = step.get("table") or {}, step.get("root") or step.get("optimum") or {}
+    texts = [step["formula"], *(one["formula"] for one in table.get("columns", ())),
+             *(row.get("formula") for row in table.get("rows", ())),
+             *(found.get(f"{end}_formula") for end in ("low", "high"))]
+    if step.get("choice"):
+        texts = [text for branch in step["choice"]["branches"] for text in (branch["value"], branch["condition"])]
+    return [node for text in texts if text and (node := quantities.tree(text)) is not None]
+
+
 def _fluids(ground: Ground, step: Data) -> Markup:
     """Links to the fluids whose properties the step reads."""
-    texts = [step["formula"], *(one["formula"] for one in (step.get("table") or {}).get("columns", ()))]
-    if step.get("choice"):
-        texts = [branch["value"] for branch in step["choice"]["branches"]]
-    nodes: list[Node] = [node for text in texts if text and (node := quantities.tree(text)) is not None]
+    nodes = formulas_of(step)
     roles = dict.fromkeys(part.fluid for node in nodes for part in walk(node) if isinstance(part, PropertyCall))
     return Markup(", ").join(link(anchor("fluid", role), f"{ground.fluids[role]}")
                              for role in roles if role in ground.fluids)
 
 
-_KINDS = {"root": _root, "choice": _choice, "lookup": _lookup, "series": _series}
+_KINDS = {"root": _root, "optimum": _optimum, "choice": _choice, "lookup": _lookup, "series": _series, "cases": cases,
+          "total": total}

@@ -117,7 +117,7 @@ results: [eta]
 @pytest.mark.parametrize(
     ("text", "ids"),
     [
-        (HEAT_PUMP, ["arrangement", "t-s", "log-p-h", "profile-condenser", "profile-evaporator"]),
+        (HEAT_PUMP, ["arrangement", "t-s", "log-p-h", "profile-condenser", "profile-evaporator", "ladder"]),
         (GAS_CYCLE, ["p-v", "t-s"]),
     ],
     ids=["heat pump", "gas cycle"],

@@ -29,7 +29,7 @@ def second(tmp_path_factory: pytest.TempPathFactory) -> Record:
 @pytest.fixture(scope="module")
 def built(small: Record, second: Record, tmp_path_factory: pytest.TempPathFactory) -> Path:
     folder = tmp_path_factory.mktemp("site") / "deep" / "site"
-    files = build_site([(small, None), (second, None)], folder)
+    files = build_site([(small, None), (second, None)], folder).files
     assert sorted(files) == sorted(path for path in folder.rglob("*") if path.is_file() and path.name != MANIFEST)
     return folder
 

@@ -5,29 +5,35 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 from typing import Any
 
+from calcpack.checks.cautions.worked import plain
 from calcpack.errors import CalcpackError
 from calcpack.fluids.gas import IdealGas
 from calcpack.fluids.register import Entry, Fact, fact, find
 from calcpack.plan.facts import StatePoint, StreamLine
 from calcpack.solving.solution import Solution
+from calcpack.spec.safety import BY_NAME
 
 
 @dataclass(frozen=True, slots=True)
 class Case:
-    """Read-only questions to one solution; values are SI floats, None where the sheet has none."""
+    """Read-only questions to one solution; values are SI floats, None where the sheet has none.
+
+    ``role`` is that of the working fluid; a cascade has a second one.
+    """
 
     solution: Solution
+    role: str = "wf"
 
     @property
     def working(self) -> Any | None:
         """The working fluid if it evaporates and condenses, else None: a textbook gas has no vessels to guard."""
-        fluid = self.solution.plan.fluids.get("wf")
+        fluid = self.solution.plan.fluids.get(self.role)
         return fluid if fluid is not None and ("p", "x") in fluid.pairs and self.points else None
 
     @property
     def points(self) -> list[StatePoint]:
         """The numbered states of the working fluid."""
-        return [point for point in self.solution.plan.facts.states if point.fluid == "wf"]
+        return [point for point in self.solution.plan.facts.states if point.fluid == self.role]
 
     @property
     def streams(self) -> list[StreamLine]:
@@ -79,6 +85,46 @@ class Case:
                 if value is not None:
                     yield value
 
+    def given(self, name: str) -> float | None:
+        """A safety quantity of the spec [SI], None where it is not given."""
+        text = self.solution.spec.case.safety.values.get(name)
+        return None if text is None else BY_NAME[name].value(text, self.solution.p_atm)
+
+    def missing(self, *names: str) -> str:
+        """Which of these safety quantities are not given, in words; empty where all are."""
+        gone = [name for name in names if self.given(name) is None]
+        return f"not given under case.safety: {', '.join(gone)}" if gone else ""
+
+    @property
+    def room_level(self) -> str:
+        """Where the room lies: 'above-ground', 'below-ground' or 'lowest-basement'."""
+        return self.solution.spec.case.safety.room_level or "above-ground"
+
+    def gauge_bar(self, p: float) -> float:
+        """An absolute pressure [Pa] as bar above the sheet's atmosphere, to the digits that a working prints."""
+        return float(plain((p - self.solution.p_atm) / 1e5))
+
+    def litres(self, name: str) -> float | None:
+        """A volume among the safety quantities in litres, to the digits that a working prints."""
+        V = self.given(name)
+        return None if V is None else float(plain(1000.0 * V))
+
+    def number(self, quantity: str) -> float | None:
+        """The number that the register gives for a quantity of the working fluid."""
+        found = self.fact(quantity)
+        return None if found is None else found.number
+
+    @property
+    def molar_mass(self) -> float | None:
+        """Of the working fluid [g/mol]."""
+        M = self.constant("M")
+        return None if M is None else 1000.0 * M
+
+    @property
+    def compresses(self) -> bool:
+        """Whether the sheet is of a machine with a compressor: a heat pump or a refrigerating machine."""
+        return self.working is not None and self.part("discharge") is not None
+
     def constant(self, name: str) -> float | None:
         """A constant of the working fluid, such as T_crit; None where its model has none."""
         fluid = self.working
@@ -94,6 +140,25 @@ class Case:
             return self.working.reader("p", ("T", "x"))(T, 0.0)
         except CalcpackError:
             return None
+
+    def bubble_temperature(self, p: float) -> float | None:
+        """The working fluid's bubble temperature at p; None above its critical point or outside its equation."""
+        try:
+            return self.working.reader("T", ("p", "x"))(p, 0.0)
+        except CalcpackError:
+            return None
+
+    def saturated(self, output: str, T: float, x: float) -> float | None:
+        """A property of the saturated working fluid; None where there is none."""
+        try:
+            return self.working.reader(output, ("T", "x"))(T, x)
+        except CalcpackError:
+            return None
+
+    def is_water(self, stream: StreamLine) -> bool:
+        """Whether a secondary stream is plain water."""
+        known = find(self.fluid_of(stream).designation)
+        return known is not None and known.designation == "R-718"
 
     def vapour_share(self, point: StatePoint) -> float | None:
         """The enthalpy-based vapour fraction of a state; None above the critical pressure."""

@@ -32,7 +32,10 @@ PRACTICE = Source("engineering practice", MEMORY)
 
 @dataclass(frozen=True, slots=True)
 class Caution:
-    """One caution of the record; ``value`` and ``threshold`` are printed texts."""
+    """One caution of the record; ``value`` and ``threshold`` are printed texts.
+
+    ``working`` holds the formulas evaluated for it, a line each.
+    """
 
     id: str
     hazard: str
@@ -44,6 +47,7 @@ class Caution:
     confirmed: str
     status: str
     reason: str
+    working: str = ""
     defer: str = DEFER
 
     def entry(self) -> dict[str, Any]:
@@ -61,14 +65,14 @@ class Topic:
     text: str
     source: Source
 
-    def evaluated(self, triggered: bool, value: str, threshold: str, reason: str = "") -> Caution:
+    def evaluated(self, triggered: bool, value: str, threshold: str, reason: str = "", working: str = "") -> Caution:
         """The caution with its computed value beside its threshold."""
-        return self._caution(value, threshold, TRIGGERED if triggered else NOT_TRIGGERED, reason)
+        return self._caution(value, threshold, TRIGGERED if triggered else NOT_TRIGGERED, reason, working)
 
-    def not_evaluated(self, reason: str, threshold: str = "") -> Caution:
+    def not_evaluated(self, reason: str, threshold: str = "", working: str = "") -> Caution:
         """The caution where something that it needs is not on the sheet."""
-        return self._caution("", threshold, NOT_EVALUATED, reason)
+        return self._caution("", threshold, NOT_EVALUATED, reason, working)
 
-    def _caution(self, value: str, threshold: str, status: str, reason: str) -> Caution:
+    def _caution(self, value: str, threshold: str, status: str, reason: str, working: str) -> Caution:
         return Caution(self.id, self.hazard, self.topic, self.text, value, threshold, self.source.text,
-                       self.source.confirmed, status, reason)
+                       self.source.confirmed, status, reason, working)

@@ -28,6 +28,8 @@ LEAST_SUPERHEAT = 5.0
 LEAST_DRYNESS = 0.88
 # Smallest differences of practice (from memory): liquid to liquid, evaporator or condenser, gas.
 PINCH_LIQUID, PINCH_PHASE_CHANGE, PINCH_GAS = 3.0, 5.0, 10.0
+# Steam at most at 565 to 600 °C; gas at a turbine's inlet 1100 °C without cooling (practice, from memory).
+HOTTEST_STEAM, UNCOOLED_GAS = 273.15 + 565.0, 273.15 + 1100.0
 # Triple point of carbon dioxide (computed; RD 552/2019 IF-04 5.2.3.2 says 5.2 bar).
 DRY_ICE = 5.18e5
 # A state within rounding of the dew line is dry.
@@ -57,11 +59,12 @@ K10_COMPRESSOR = Topic("C-K10b", HAZARD, "Liquid to the compressor",
 K11 = Topic("C-K11", HAZARD, "Small superheat",
             "A dry-expansion evaporator needs this superheat to keep liquid from the compressor at part load.",
             PRACTICE)
-K12 = Topic("C-K12", HAZARD, "Suction head of the feed pump",
-            "The pump draws near-saturated liquid: the head available must exceed what the pump needs.",
-            Source("a page citing ANSI/HI 9.6.1: ratio 1.1 and 0.9 m, 2.0 near the bubble point", SECOND_HAND))
 K14 = Topic("C-K14", HAZARD, "Small pinch",
             "A smaller difference than this calls for an area that is seldom built.", PRACTICE)
+K16_STEAM = Topic("C-K16a", HAZARD, "Steam temperature",
+                  "Above this steam temperature metal creeps and another class of material is needed.", PRACTICE)
+K16_GAS = Topic("C-K16b", HAZARD, "Turbine inlet temperature",
+                "Above this gas temperature metal that is not cooled creeps.", PRACTICE)
 T8 = Topic("C-T8", HAZARD, "Dry ice",
            "Carbon dioxide below this pressure turns solid and blocks vents and relief outlets.",
            Source("RD 552/2019 IF-04 5.2.3.2; triple point computed", TEXT))
@@ -148,14 +151,6 @@ def superheat(case: Case) -> Caution | None:
                          "the kind of evaporator is not an input of this sheet")
 
 
-def feed_pump(case: Case) -> Caution | None:
-    """Heights and losses are not on a cycle sheet."""
-    if case.working is None or case.point("pump inlet") is None:
-        return None
-    return K12.not_evaluated("the height of the receiver, the losses of the line and the pump's need are not inputs "
-                             "of this sheet")
-
-
 def small_pinch(case: Case) -> Caution | None:
     """The exchanger whose smallest difference is farthest below practice."""
     found = [(case.solution.value(view.series) / _usual_pinch(case, view), view)
@@ -167,6 +162,22 @@ def small_pinch(case: Case) -> Caution | None:
     return K14.evaluated(share < 1.0 - _ROUNDING, value,
                          f"less than {difference(case.solution, _usual_pinch(case, view))}",
                          "5 K with evaporation or condensation, 3 K liquid to liquid, 10 K with a gas")
+
+
+def hottest_metal(case: Case) -> Caution | None:
+    """Steam, or the gas at a turbine's inlet, against what metal bears."""
+    gas = case.part("gas turbine inlet")
+    if gas is None and case.working is None:
+        # A gas machine names its hottest gas; the machines of steam name their hottest steam by the same word.
+        gas = case.part("hottest")
+    if gas is not None:
+        return K16_GAS.evaluated(gas > UNCOOLED_GAS, temperature(case.solution, gas),
+                                 f"above {temperature(case.solution, UNCOOLED_GAS)}")
+    if not case.is_fluid("R-718") or case.compresses:
+        return None
+    hottest = max(case.of_points("T"))
+    return K16_STEAM.evaluated(hottest > HOTTEST_STEAM, temperature(case.solution, hottest),
+                               f"above {temperature(case.solution, HOTTEST_STEAM)}", "practice is 565 to 600 °C")
 
 
 def dry_ice(case: Case) -> Caution | None:
@@ -194,5 +205,5 @@ def _dryness(share: float) -> str:
     return "dry vapour" if share > 1.0 - _ROUNDING else f"vapour fraction {share:.4f}"
 
 
-CAUTIONS = (pressure_ratio, near_critical, stability, below_atmosphere, exhaust, suction, superheat, feed_pump,
-            small_pinch, dry_ice)
+CAUTIONS = (pressure_ratio, near_critical, stability, below_atmosphere, exhaust, suction, superheat,
+            small_pinch, hottest_metal, dry_ice)

@@ -1,4 +1,4 @@
-"""Pressures to cautions on pressure equipment, standstill and relief."""
+"""Pressures to cautions on the scope of pressure-equipment rules and on standstill."""
 from __future__ import annotations
 
 from calcpack.checks.cautions.case import Case
@@ -13,11 +13,9 @@ NORMAL_ATMOSPHERE = 101325.0
 EUROPE_FROM = 0.5e5
 # ASME BPVC VIII-1, U-1: above 15 psi, internal or external (from memory).
 UNITED_STATES_FROM = unit("psi").to_si(15.0)
-# EN 378-2 Table 2: reference temperature of an air-cooled high side, ambient up to 32 °C (from memory).
-STANDSTILL_T = 273.15 + 55.0
-# Relief by latent heat is invalid near the critical pressure (RD 552 IF-08 3.3.4.3 note, from the text); the 0.9 is
-# a choice made here.
-RELIEF_SHARE = 0.9
+# EN 378-2 Table 2: ambient up to, then the reference temperature of an air-cooled high side (°C, from memory); a low
+# side outdoors has that of the ambient itself.
+REFERENCE_T = ((32.0, 55.0), (38.0, 59.0), (43.0, 63.0), (55.0, 67.0))
 
 P1 = Topic("C-P1", HAZARD, "Pressure equipment",
            "Equipment above this pressure falls under the European pressure equipment rules, which set its category, "
@@ -33,10 +31,7 @@ P16 = Topic("C-P16", HAZARD, "Pressure vessel code, United States",
 P18 = Topic("C-P18", HAZARD, "Standstill pressure",
             "At rest in warm surroundings the whole circuit comes to this saturation pressure, and the maximum "
             "allowable pressure must not be below it; the operating pressure alone does not set it.",
-            Source("RD 552/2019 IF-06 1.2 (rule, from the text); 55 °C from EN 378-2 Table 2", MEMORY))
-R5 = Topic("C-R5", HAZARD, "Relief near the critical pressure",
-           "Near the critical pressure the heat of evaporation vanishes, and relief valves cannot be sized by it.",
-           Source("RD 552/2019 IF-08 3.3.4.3 note; the share of 0.9 is calcpack's choice", TEXT))
+            Source("RD 552/2019 IF-06 1.2 (rule, from the text); temperatures from EN 378-2 Table 2", MEMORY))
 H11 = Topic("C-H11", HAZARD, "Freezing at standstill",
             "A fluid that freezes near ambient temperature can block or burst pipes when the plant stands still.",
             Source("lowest temperature of the fluid's equation of state", COMPUTED))
@@ -50,6 +45,15 @@ def europe(case: Case) -> Caution | None:
     solution = case.solution
     return P1.evaluated(highest - solution.p_atm > EUROPE_FROM, gauge(solution, highest),
                         f"above {gauge(solution, solution.p_atm + EUROPE_FROM, 2)}", _group(case))
+
+
+def is_gas(case: Case) -> bool:
+    """Whether the working fluid counts as a gas, by its vapour pressure at the highest temperature computed."""
+    hottest, T_crit = max(case.of_points("T")), case.constant("T_crit")
+    if T_crit is not None and hottest >= T_crit:
+        return True
+    p = case.bubble_pressure(hottest)
+    return p is None or p > NORMAL_ATMOSPHERE + EUROPE_FROM
 
 
 def gas_or_liquid(case: Case) -> Caution | None:
@@ -81,39 +85,43 @@ def united_states(case: Case) -> Caution | None:
                          "the diameter is not an input of this sheet")
 
 
+def reference_temperature(ambient: float | None) -> float | None:
+    """The reference temperature [K] of an air-cooled high side by the highest ambient one; None beyond the table."""
+    degrees = 0.0 if ambient is None else ambient - 273.15
+    return next((273.15 + high for limit, high in REFERENCE_T if degrees <= limit + 1e-9), None)
+
+
 def standstill(case: Case) -> Caution | None:
-    """Saturation at 55 °C against the highest operating pressure."""
+    """Saturation at the reference temperature against PS, or against the highest operating pressure."""
     if case.working is None:
         return None
-    at = temperature(case.solution, STANDSTILL_T)
-    T_crit = case.constant("T_crit")
-    p = case.bubble_pressure(STANDSTILL_T)
+    ambient, PS = case.given("ambient_max"), case.given("PS")
+    T = reference_temperature(ambient)
+    if T is None:
+        return P18.not_evaluated("the table of reference temperatures ends at an ambient temperature of 55 °C")
+    at = temperature(case.solution, T)
+    T_crit, p = case.constant("T_crit"), case.bubble_pressure(T)
     if p is None:
         why = "is above the critical temperature: the standstill pressure hangs on charge and volume" \
-            if T_crit is not None and T_crit <= STANDSTILL_T else "has no saturation pressure on this equation"
+            if T_crit is not None and T_crit <= T else "has no saturation pressure on this equation"
         return P18.not_evaluated(f"{at} {why}")
     operating = max(case.of_points("p"))
-    return P18.evaluated(p > operating, f"{pressure(case.solution, p)} at {at}",
-                         f"above the highest operating pressure, {pressure(case.solution, operating)}",
-                         "bubble point; the ambient temperature is not an input of this sheet")
-
-
-def relief(case: Case) -> Caution | None:
-    """The highest pressure against the critical one."""
-    p_crit = case.constant("p_crit")
-    if case.working is None or p_crit is None:
-        return None
-    share = max(case.of_points("p")) / p_crit
-    return R5.evaluated(share > RELIEF_SHARE, f"{share:.3f} of the critical pressure", f"above {RELIEF_SHARE}",
-                        "at the highest operating pressure; the relieving pressure lies above it")
+    least, name = (operating, "the highest operating pressure") if PS is None else (PS, "PS")
+    note = "the ambient temperature is not given: up to 32 °C" if ambient is None else \
+        f"air-cooled high side, ambient up to {temperature(case.solution, ambient)}"
+    return P18.evaluated(p > least, f"{pressure(case.solution, p)} at {at}",
+                         f"above {name}, {pressure(case.solution, least)}", f"bubble point; {note}")
 
 
 def freezing_at_rest(case: Case) -> Caution | None:
-    """A working fluid whose equation ends above 0 °C is solid not far below."""
+    """A working fluid whose equation ends above the lowest ambient temperature is solid not far below."""
     if case.working is None:
         return None
-    return H11.evaluated(case.working.T_min >= 273.15, temperature(case.solution, case.working.T_min),
-                         f"at or above {temperature(case.solution, 273.15)}")
+    ambient = case.given("ambient_min")
+    least = 273.15 if ambient is None else ambient
+    return H11.evaluated(case.working.T_min >= least, temperature(case.solution, case.working.T_min),
+                         f"at or above {temperature(case.solution, least)}",
+                         "" if ambient is None else "the lowest temperature of the surroundings")
 
 
 def _highest(case: Case) -> float | None:
@@ -125,7 +133,7 @@ def _highest(case: Case) -> float | None:
 
 def _group(case: Case) -> str:
     group = case.fact("PED fluid group")
-    words = "volume and diameter are not inputs of this sheet"
+    words = "the category follows volume or nominal size"
     if group is None:
         return words
     return f"fluid group {group.value} ({group.source}); {words}"
@@ -135,4 +143,4 @@ def _absolute(case: Case, value: float) -> str:
     return f"above {pressure(case.solution, value)} absolute"
 
 
-CAUTIONS = (europe, gas_or_liquid, united_states, standstill, relief, freezing_at_rest)
+CAUTIONS = (europe, gas_or_liquid, united_states, standstill, freezing_at_rest)

@@ -3,8 +3,8 @@ from __future__ import annotations
 
 from calcpack.checks.cautions.case import Case
 from calcpack.checks.cautions.caution import MEMORY, PRACTICE, SECOND_HAND, TEXT, Caution, Source, Topic
+from calcpack.checks.cautions.room import hottest
 from calcpack.checks.entries import temperature
-from calcpack.fluids.register import find
 from calcpack.plan.facts import StreamLine
 
 OIL, TOUCH, WATER, COLD = "Oil and compressor", "Hot surfaces and water", "Legionella", "Freezing and frost"
@@ -29,6 +29,8 @@ SCALD_TIMES = ((68.0, "about 1 s"), (66.0, "about 1.5 s"), (63.0, "under 3 s"), 
 STORE_AT = ZERO + 60.0
 # Legionella grow between 20 and 45 °C (building-services pages, second-hand).
 GROWTH = (ZERO + 20.0, ZERO + 45.0)
+# Baths at most at 44 °C, showers and basins at 41 °C (building-services page, second-hand).
+BATH, SHOWER = ZERO + 44.0, ZERO + 41.0
 # Leaving water below 4 °C can freeze in an evaporator (from memory).
 LEAVING_WATER = ZERO + 4.0
 
@@ -49,6 +51,12 @@ H2 = Topic("C-H2", TOUCH, "Hot surface",
 H3 = Topic("C-H3", TOUCH, "Scalding",
            "Where a person may draw this water it scalds: a mixing valve at the tap bounds its temperature.",
            Source("burn-institute table of times to a serious burn", SECOND_HAND))
+H4 = Topic("C-H4", TOUCH, "Temperature at the tap",
+           "In care settings a mixing valve keeps the tap to 44 °C for baths and 41 °C for showers and basins.",
+           Source("building-services page", SECOND_HAND))
+H7 = Topic("C-H7", WATER, "Condensing below the storage temperature",
+           "The machine alone cannot heat water to the storage temperature: it needs back-up heat or a regular hot "
+           "cycle where the water is stored.", PRACTICE)
 H5 = Topic("C-H5", WATER, "Storage temperature",
            "Where the water is stored and drawn for washing, water below this temperature lets legionella survive; "
            "back-up heat or a regular hot cycle is then needed.",
@@ -66,6 +74,8 @@ H9 = Topic("C-H9", COLD, "Frost on an air coil",
 H10 = Topic("C-H10", COLD, "Condensation on cold surfaces",
             "Surfaces below the dew point of the room drip and corrode under the insulation without a vapour barrier.",
             Source("RD 552/2019 IF-05 3.2", TEXT))
+
+USE = "what the water is used for is not an input of this sheet"
 
 
 def discharge(case: Case) -> Caution | None:
@@ -95,20 +105,30 @@ def ammonia_discharge(case: Case) -> Caution | None:
                         "practice is 120 to 150 °C for reciprocating, 80 to 100 °C for oil-flooded screw machines")
 
 
+def tap(case: Case) -> Caution | None:
+    """The tap, where its temperature is given."""
+    T = case.given("tap_temperature")
+    if T is None or case.working is None:
+        return None
+    return H4.evaluated(T > SHOWER, temperature(case.solution, T), f"above {temperature(case.solution, SHOWER)}",
+                        "above that of a bath too" if T > BATH else "")
+
+
 def burn(case: Case) -> Caution | None:
     """The hottest fluid against contact of one second."""
-    hottest = _hottest(case)
-    return None if hottest is None else H1.evaluated(
-        hottest >= TOUCH_ONE_SECOND, temperature(case.solution, hottest), f"at or {_above(case, TOUCH_ONE_SECOND)}",
-        "a bare surface is taken as hot as the hottest fluid in it")
+    if case.working is None:
+        return None
+    T, which = hottest(case)
+    return H1.evaluated(T >= TOUCH_ONE_SECOND, temperature(case.solution, T),
+                        f"at or {_above(case, TOUCH_ONE_SECOND)}", which)
 
 
 def surface(case: Case) -> Caution | None:
     """The hottest fluid against the usual industrial surface."""
-    hottest = _hottest(case)
-    return None if hottest is None else H2.evaluated(
-        hottest > INDUSTRIAL_SURFACE, temperature(case.solution, hottest), _above(case, INDUSTRIAL_SURFACE),
-        "a bare surface is taken as hot as the hottest fluid in it")
+    if case.working is None:
+        return None
+    T, which = hottest(case)
+    return H2.evaluated(T > INDUSTRIAL_SURFACE, temperature(case.solution, T), _above(case, INDUSTRIAL_SURFACE), which)
 
 
 def scald(case: Case) -> Caution | None:
@@ -122,30 +142,40 @@ def scald(case: Case) -> Caution | None:
 
 
 def storage(case: Case) -> Caution | None:
-    """Heated water too cool to keep legionella down."""
-    T = _heated_water(case)
-    if T is None:
+    """Stored water, or heated water in its place, too cool to keep legionella down."""
+    given = case.given("store_temperature")
+    T = given if given is not None else _heated_water(case)
+    if T is None or case.working is None:
         return None
     return H5.evaluated(T < STORE_AT, temperature(case.solution, T), f"below {temperature(case.solution, STORE_AT)}",
-                        "what the water is used for is not an input of this sheet")
+                        USE if given is None else "the store as given")
+
+
+def condensing(case: Case) -> Caution | None:
+    """A heat pump for water that condenses below the storage temperature."""
+    T = case.part("condensing")
+    if T is None or _heated_water(case) is None:
+        return None
+    return H7.evaluated(T < STORE_AT, temperature(case.solution, T), _below(case, STORE_AT), USE)
 
 
 def growth(case: Case) -> Caution | None:
-    """Heated water inside the growth band at either end."""
-    stream = _sink_water(case)
+    """Stored water, or heated water at either end, inside the growth band."""
+    stream, store = _sink_water(case), case.given("store_temperature")
     if stream is None:
         return None
     ends = [value for value in (case.value(stream.T_in), case.value(stream.T_out)) if value is not None]
+    ends = ends if store is None else [store]
     low, high = (temperature(case.solution, end) for end in GROWTH)
     return H6.evaluated(any(GROWTH[0] < T < GROWTH[1] for T in ends),
                         " to ".join(temperature(case.solution, T) for T in ends), f"between {low} and {high}",
-                        "what the water is used for is not an input of this sheet")
+                        USE if store is None else "the store as given")
 
 
 def freezing(case: Case) -> Caution | None:
     """Plain water that an evaporator cools."""
     T = case.part("evaporating")
-    stream = next((one for one in case.streams if _is_water(case, one) and _cools(case, one)), None)
+    stream = next((one for one in case.streams if case.is_water(one) and _cools(case, one)), None)
     if T is None or stream is None or case.part("discharge") is None:
         return None
     leaving = case.value(stream.T_out)
@@ -160,27 +190,24 @@ def frost(case: Case) -> Caution | None:
     air = any(case.is_gas(case.fluid_of(one)) and _cools(case, one) for one in case.streams)
     if T is None or not air or case.part("discharge") is None:
         return None
-    return H9.evaluated(T < ZERO, f"evaporating {temperature(case.solution, T)}", _below(case, ZERO),
-                        "the coil's surface is taken as cold as the refrigerant; the air's dew point is not an input")
+    dew = case.given("air_dew_point")
+    limit, name = (ZERO, "; the dew point of the air is not given") if dew is None else (min(ZERO, dew), "")
+    return H9.evaluated(limit > T, f"evaporating {temperature(case.solution, T)}", _below(case, limit),
+                        f"the coil's surface is taken as cold as the refrigerant{name}")
 
 
 def condensation(case: Case) -> Caution | None:
-    """Cold surfaces; the room's dew point is unknown."""
-    if case.working is None or min(case.of_points("T")) >= ZERO + 20.0:
-        return None
-    coldest = temperature(case.solution, min(case.of_points("T")))
-    return H10.not_evaluated(f"the room's dew point is not an input of this sheet; the coldest fluid is at {coldest}")
-
-
-def _hottest(case: Case) -> float | None:
+    """The coldest fluid against the dew point of the room."""
     if case.working is None:
         return None
-    return max([*case.of_points("T"), *case.of_streams("T_in", "T_out")])
-
-
-def _is_water(case: Case, stream: StreamLine) -> bool:
-    known = find(case.fluid_of(stream).designation)
-    return known is not None and known.designation == "R-718"
+    coldest, dew = min([*case.of_points("T"), *case.of_streams("T_in", "T_out")]), case.given("room_dew_point")
+    if dew is not None:
+        return H10.evaluated(coldest < dew, temperature(case.solution, coldest), _below(case, dew),
+                             "a surface is taken as cold as the coldest fluid in it")
+    if coldest >= ZERO + 20.0:
+        return None
+    return H10.not_evaluated(f"{case.missing('room_dew_point')}; the coldest fluid is at "
+                             f"{temperature(case.solution, coldest)}")
 
 
 def _cools(case: Case, stream: StreamLine) -> bool:
@@ -192,7 +219,7 @@ def _sink_water(case: Case) -> StreamLine | None:
     """The water that a heat pump heats; an engine's cooling water is not drawn by anybody."""
     if case.part("discharge") is None:
         return None
-    return next((one for one in case.streams if _is_water(case, one) and not _cools(case, one)), None)
+    return next((one for one in case.streams if case.is_water(one) and not _cools(case, one)), None)
 
 
 def _heated_water(case: Case) -> float | None:
@@ -208,4 +235,5 @@ def _below(case: Case, limit: float) -> str:
     return f"below {temperature(case.solution, limit)}"
 
 
-CAUTIONS = (discharge, oil, ammonia_discharge, burn, surface, scald, storage, growth, freezing, frost, condensation)
+CAUTIONS = (discharge, oil, ammonia_discharge, burn, surface, scald, tap, storage, condensing, growth, freezing, frost,
+            condensation)
