@@ -1,8 +1,9 @@
 """The commands: parse, call, print. No engineering here.
 
-Exit status: 0 solved and every limit holds; 1 a limit fails, or a comparison
-differs; 2 the spec or the command is wrong; 3 the numbers have no answer; 4 a
-part of the machine is missing.
+Exit status: 0 solved and every limit holds or is waived; 1 a limit fails, a comparison
+differs, a published check is off, or a point is unmet where that is asked;
+2 the spec or the command is wrong; 3 the numbers have no answer; 4 a part of
+the machine is missing.
 """
 from __future__ import annotations
 
@@ -118,17 +119,25 @@ def _json(records: Sequence[Any]) -> str:
               help="Folder of the site.")
 @click.option("--no-pdf", is_flag=True, help="Leave the PDFs out.")
 @click.option("--jobs", type=click.IntRange(1, 64), default=None, help="Processes; as many as cores if left out.")
+@click.option("--verification", type=click.Path(path_type=Path),
+              help="Record of 'calcpack self-check'; verification.json beside a spec if left out.")
+@click.option("--strict", is_flag=True, help="Exit status 1 if a sheet leaves a point of its checklist unmet.")
 @click.option("-q", "--quiet", is_flag=True, help="Print nothing but faults.")
 @reported
-def build(sources: tuple[Path, ...], output: Path, no_pdf: bool, jobs: int | None, quiet: bool) -> int:
+def build(sources: tuple[Path, ...], output: Path, no_pdf: bool, jobs: int | None, verification: Path | None,
+          strict: bool, quiet: bool) -> int:
     """Build the site: register, a page and a PDF a sheet, records. SOURCES are specs or folders (default: specs)."""
     from calcpack.pipeline import build_package
-    from calcpack.terminal import print_built, progress
+    from calcpack.terminal import print_built, print_unmet, progress
     with progress(quiet) as tell:
-        package = build_package(sources or (Path("specs"),), output, pdf=not no_pdf, jobs=jobs, tell=tell)
+        package = build_package(sources or (Path("specs"),), output, pdf=not no_pdf, jobs=jobs, tell=tell,
+                                verification=verification)
     if not quiet:
         print_built(package, output)
-    return 1 if any(record.failed_limits for record in package.records) else 0
+    if strict:
+        print_unmet(package)
+    failed = any(record.failed_limits for record in package.records)
+    return 1 if failed or (strict and any(package.unmet.values())) else 0
 
 
 @main.command()
@@ -182,6 +191,34 @@ def fluids(fluid: str | None) -> int:
     else:
         print_fluid(fluid)
     return 0
+
+
+@main.command(name="self-check")
+@click.argument("method", required=False)
+@click.option("--json", "as_json", is_flag=True, help="Print the verification record.")
+@click.option("-o", "--output", type=click.Path(path_type=Path),
+              help="File for the verification record, such as verification.json beside the specs.")
+@click.option("-q", "--quiet", is_flag=True, help="Print what fails only.")
+@reported
+def self_check(method: str | None, as_json: bool, output: Path | None, quiet: bool) -> int:
+    """Run the published checks on this machine, all or those solved by METHOD.
+
+    Each is an example from the literature, solved as a spec, with the published values beside the computed
+    ones. Exit status 1 if one is off by more than is allowed for it.
+    """
+    from calcpack.terminal import print_verification, progress
+    from calcpack.verification.run import self_check as run
+    from calcpack.verification.run import to_json
+    from calcpack.writing import write_whole
+    with progress(quiet or as_json) as tell:
+        verification = run(method, tell)
+    if output is not None:
+        write_whole(output, to_json(verification))
+    if as_json:
+        click.echo(to_json(verification), nl=False)
+    else:
+        print_verification(verification, quiet=quiet, written=output)
+    return 0 if verification["pass"] else 1
 
 
 @main.command()

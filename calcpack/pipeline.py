@@ -14,6 +14,7 @@ from typing import TYPE_CHECKING, Any
 from calcpack.errors import CalcpackError, CommandError, Fault, NoAnswerError, SpecError
 
 if TYPE_CHECKING:
+    from calcpack.points import Point
     from calcpack.record import Record
     from calcpack.spec import Spec
 
@@ -22,10 +23,11 @@ Tell = Callable[[str], None]
 
 @dataclass(frozen=True, slots=True)
 class Package:
-    """What a build made: the records in the order of their numbers, and the files written."""
+    """What a build made: the records in the order of their numbers, the files written, each sheet's open points."""
 
     records: tuple[Record, ...]
     files: tuple[Path, ...]
+    unmet: Mapping[str, tuple[Point, ...]]
 
 
 def solve_spec(path: Path, overrides: Mapping[str, str] | None = None, *, text: str | None = None,
@@ -79,8 +81,12 @@ def _together(calls: Sequence[Callable[[], Any]]) -> list[Any]:
     return done
 
 
-def build_package(sources: Sequence[Path], folder: Path, *, pdf: bool, jobs: int | None, tell: Tell) -> Package:
+def build_package(sources: Sequence[Path], folder: Path, *, pdf: bool, jobs: int | None, tell: Tell,
+                  verification: Path | None = None) -> Package:
     """Solve every spec in ``sources``, compare each with its baseline and write the site to ``folder``.
+
+    ``verification`` is the record of a run of the published checks; without
+    one, ``verification.json`` beside a spec is taken where there is one.
 
     Raises
     ------
@@ -91,12 +97,27 @@ def build_package(sources: Sequence[Path], folder: Path, *, pdf: bool, jobs: int
     paths = spec_files(sources)
     jobs = jobs or min(len(paths), os.cpu_count() or 1)
     tell(f"solving {len(paths)} sheets" if len(paths) > 1 else "solving 1 sheet")
-    solved = _solve_with_baselines(paths, jobs)
-    solved.sort(key=lambda pair: pair[0].number)
+    runs = _verifications(paths, verification)
+    found = list(zip(_solve_with_baselines(paths, jobs), runs, strict=True))
+    found.sort(key=lambda one: one[0][0].number)
+    solved = [pair for pair, _ in found]
     _require_distinct(solved)
     tell("writing pages" + (" and PDFs" if pdf else ""))
-    files = build_site(solved, folder, pdf=pdf, jobs=jobs, progress=tell)
-    return Package(tuple(record for record, _ in solved), tuple(files))
+    verifications = {record.number: run for (record, _), run in found if run is not None}
+    site = build_site(solved, folder, pdf=pdf, jobs=jobs, progress=tell, verifications=verifications)
+    return Package(tuple(record for record, _ in solved), site.files, site.unmet)
+
+
+VERIFICATION = "verification.json"
+"""Name of the record of a run of the published checks, beside the specs that it goes with."""
+
+
+def _verifications(paths: Sequence[Path], given: Path | None) -> list[dict[str, Any] | None]:
+    """For each spec the run of the published checks that its sheet speaks of."""
+    from calcpack.verification.run import read_verification
+    files = [given or path.with_name(VERIFICATION) for path in paths]
+    read = {file: read_verification(file) for file in dict.fromkeys(files) if given is not None or file.is_file()}
+    return [read.get(file) for file in files]
 
 
 def _solve_with_baselines(paths: Sequence[Path], jobs: int) -> list[tuple[Record, dict | None]]:

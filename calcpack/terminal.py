@@ -4,6 +4,7 @@ from __future__ import annotations
 import sys
 from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
 from contextlib import contextmanager
+from dataclasses import asdict
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
@@ -13,7 +14,7 @@ from rich.table import Table
 from rich.text import Text
 
 from calcpack.errors import CommandError, Fault, nearest
-from calcpack.units import shown_with_unit
+from calcpack.units import shown_with_unit, unit
 
 if TYPE_CHECKING:
     from calcpack.pipeline import Package
@@ -54,8 +55,9 @@ def print_record(record: Record, *, steps: bool, quiet: bool) -> None:
             inside = [step for step in data["steps"] if step["section"] == section["id"]]
             _rows(out, f"{section['id']} {section['title']}", (_step_row(step) for step in inside))
     _rows(out, "Results", ((symbol, with_twin(one), one["title"]) for symbol, one in in_order(data["results"])))
-    limits = data["limits"] if not quiet else record.failed_limits
-    _rows(out, "Limits", ((one["id"], _verdict(one["status"]), one["text"]) for one in limits))
+    limits = data["limits"] if not quiet else (*record.failed_limits, *record.waived_limits)
+    _rows(out, "Limits", ((one["id"], _verdict(one.get("verdict", one["status"])), _limit_words(one))
+                          for one in limits))
     if quiet:
         return
     _rows(out, "Holds", ((one["id"], one["text"]) for one in data["holds"]))
@@ -84,7 +86,15 @@ def in_order(results: Mapping[str, Any]) -> list[tuple[str, Any]]:
 
 
 def _verdict(status: str) -> str:
-    return {"holds": "holds", "fails": "FAILS"}.get(status, status)
+    return {"holds": "holds", "fails": "FAILS", "waived": "FAILS, waived"}.get(status, status)
+
+
+def _limit_words(limit: Mapping[str, Any]) -> str:
+    """A limit's text; where it is waived, who answers for it and why."""
+    waiver = limit.get("waiver")
+    if limit.get("verdict") != "waived" or not waiver:
+        return limit["text"]
+    return f"{limit['text']}. Waived by {waiver['name']}, {waiver['date']}: {waiver['reason']}"
 
 
 def _check_rows(checks: Sequence[Mapping[str, Any]]) -> list[tuple[str, str]]:
@@ -123,10 +133,60 @@ def print_built(package: Package, folder: Path) -> None:
         state = f"{failed} limit{'s' if failed > 1 else ''} FAILS" if failed == 1 else \
             f"{failed} limits FAIL" if failed else "limits hold"
         holds = len(record.data["holds"])
+        waived = len(record.waived_limits)
+        state += f", {waived} waived" if waived else ""
         rows.append((sheet["number"], sheet["revision"], sheet["status"],
                      state + (f", {holds} hold{'s' if holds > 1 else ''} open" if holds else ""), sheet["title"]))
     _rows(out, f"{len(rows)} sheets in {folder}" if len(rows) != 1 else f"1 sheet in {folder}", rows)
     out.print(f"open {folder / 'index.html'}")
+
+
+def print_unmet(package: Package) -> None:
+    """The points of the checklists that are not met, sheet by sheet."""
+    out = console()
+    for number, points in package.unmet.items():
+        _rows(out, f"{number}: {len(points)} points of the checklist are not met",
+              ((str(one.number), f"{one.text}: {one.where}") for one in points))
+
+
+def print_verification(verification: Mapping[str, Any], *, quiet: bool, written: Path | None) -> None:
+    """The worst value of each published example, what failed, and the sum by method."""
+    out, results = console(), verification["results"]
+    if not quiet:
+        out.print(Text("Published examples: the value that is farthest off in each", style="bold"))
+        out.print(Text(f"{'row':<6}{'symbol':<12}{'published':<20} {'computed':>12} {'off':>10} {'allowed':>9}",
+                       style="bold"))
+        for one in results:
+            _print_worst(out, one)
+        out.print("")
+    failed = [one for one in results if one["failure"] or not all(value["holds"] for value in one["values"])]
+    _rows(out, "FAILS", ((one["row"], f"{one['case']}: {one['failure'] or _beyond(one)}") for one in failed))
+    rows = []
+    for name, done in verification["methods"].items():
+        rows.append((name, f"{done['cases']} cases", f"{done['values']} values",
+                     f"{'within' if done['pass'] else 'NOT within'} what is allowed"))
+    _rows(out, f"{verification['date']}, set {verification['test_set']}, calcpack "
+          f"{verification['engine']['calcpack']}, CoolProp {verification['engine']['libraries']['CoolProp']}", rows)
+    if written is not None:
+        out.print(f"wrote {written}; a build with it beside the specs prints it on the sheets")
+
+
+def _print_worst(out: Console, result: Mapping[str, Any]) -> None:
+    """One line, at most as wide as the table; a case of several is told by its number in the set."""
+    from calcpack.verification.published import relative
+    worst = max(result["values"], key=lambda one: one["share"], default=None)
+    if worst is None:
+        out.print(f"{result['row']:<6}no value: see below")
+        return
+    mark = "ok" if result["failure"] is None and worst["holds"] else "FAILS"
+    out.print(f"{result['row']:<6}{worst['symbol'][:11]:<12}{worst['published'][:20]:<20} {worst['computed']:>12.8g} "
+              f"{relative(worst['deviation'], worst['scale']):>10} "
+              f"{relative(worst['allowed'], worst['scale']):>9} {mark}")
+
+
+def _beyond(result: Mapping[str, Any]) -> str:
+    return "; ".join(f"{one['symbol']} is {one['computed']:.6g}, published {one['published']}"
+                     for one in result["values"] if not one["holds"])
 
 
 def print_methods() -> None:
@@ -149,6 +209,8 @@ def print_method(name: str) -> None:
     for option in method.options:
         rows = [(value + (" *" if value == option.default else ""), meaning)
                 for value, meaning in option.values.items()]
+        if option.pattern:
+            rows.append(("or others", option.pattern_text))
         _rows(out, f"Option {option.name}: {option.title.lower()}", rows)
     if method.options:
         out.print("* taken where the spec is silent\n")
@@ -210,26 +272,47 @@ def print_fluids() -> None:
               "brines, gas mixtures and streams of constant heat capacity can be used too.")
 
 
-def print_fluid(name: str) -> None:
-    """A fluid: model, equation of state with its literature, range, facts with source."""
+def _opened(name: str) -> Any:
+    """A fluid by its name; a brine, which needs a share of its solute, at 30 % by mass."""
     from calcpack.errors import CalcpackError
     from calcpack.fluids import open_fluid
     from calcpack.fluids.definition import FluidDefinition
     from calcpack.fluids.register import designations
-    out = console()
     try:
-        fluid = open_fluid(FluidDefinition(name))
+        return open_fluid(FluidDefinition(name))
     except CalcpackError as error:
-        hint = error.faults[0].hint or nearest(name, designations())
-        raise CommandError(Fault(f"there is no fluid {name!r}", hint=hint)) from None
+        hint = error.faults[0].hint or ""
+        if hint.startswith("mass_fraction"):
+            return open_fluid(FluidDefinition(name, mass_fraction=0.30))
+        raise CommandError(Fault(f"there is no fluid {name!r}", hint=hint or nearest(name, designations()))) from None
+
+
+def print_fluid(name: str) -> None:
+    """A fluid: model, equation of state with its literature, range, facts with source."""
+    from calcpack.fluids.register.groups import absent, grouped
+    from calcpack.record.constants import constant_entries
+    out, fluid = console(), _opened(name)
     out.print(Text(f"{fluid.designation}\n", style="bold"))
     _rows(out, "Properties", (("model", fluid.model), ("equation", fluid.equation), ("range", fluid.range_text),
                               ("h, s zero", fluid.reference_state)))
-    _rows(out, "Facts of the register", ((fact.quantity, shown_with_unit(str(fact.value), fact.unit or ""),
-                                          confirmed_words(fact)) for fact in fluid.facts))
+    _rows(out, "Constants", ((one["symbol"], with_twin(one), one["title"]) for one in constant_entries(fluid, "si")))
+    found = [asdict(fact) for fact in fluid.facts]
+    for title, facts in grouped(found):
+        _rows(out, title, (_fact_row(fact) for fact in facts))
+    if gone := absent(found):
+        _rows(out, "Not in the register", [(", ".join(title.lower() for title in gone),)])
+    out.print("Each fact with its source; the edition in force at the place of use holds.")
 
 
-def confirmed_words(fact: Any) -> str:
+def _fact_row(fact: Mapping[str, Any]) -> tuple[str, str, str]:
+    """A fact: quantity, value with its unit, source with how far it is confirmed and what is to be noted."""
+    written = unit(fact["unit"]).symbol if fact["unit"] else ""
+    note = f" ({fact['note']})" if fact["note"] else ""
+    short = fact["quantity"].partition(" (")[0].removesuffix(" temperature").replace("thermal-stability guide", "guide")
+    return short, shown_with_unit(fact["value"], written), confirmed_words(fact) + note
+
+
+def confirmed_words(fact: Mapping[str, Any]) -> str:
     """A fact's source, and how far it has been confirmed."""
     known = {"yes": "confirmed", "no": "not confirmed", "second-hand": "second-hand", "derived": "derived"}
-    return f"{fact.source}; {known.get(fact.confirmed, fact.confirmed)}"
+    return f"{fact['source']}; {known.get(fact['confirmed'], fact['confirmed'])}"

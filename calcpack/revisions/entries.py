@@ -17,7 +17,7 @@ ASSUMPTION = (("text", ""), ("basis", "basis"), ("effect", "effect"), ("status",
               ("due", "due"))
 FLUID = (("designation", ""), ("model", "model"), ("equation", "equation"), ("identity", "identity"),
          ("reference_state", "reference state"), ("range", "range"))
-LIMIT = (("symbol", ""), ("sense", ""), ("bound", "bound"), ("why", "why"), ("source", "source"))
+LIMIT = (("symbol", ""), ("sense", ""), ("bound", "bound"), ("why", "why"), ("source", "source"), ("waiver", "waiver"))
 """What somebody wrote of a limit; the rest, :data:`OUTCOME`, follows."""
 OUTCOME = (("value", "value"), ("margin", "margin"), ("status", "verdict"))
 
@@ -91,7 +91,7 @@ def references(old: Data, new: Data) -> list[dict[str, Any]]:
 def limits(old: Data, new: Data) -> list[dict[str, Any]]:
     """Limits that came, went, were edited ('changed'), or whose value alone moved ('moved')."""
     found = []
-    for name, was, now in paired(by("id", old.get("limits")), by("id", new.get("limits"))):
+    for name, was, now in paired(_limits(old), _limits(new)):
         written, outcome = _fields(was, now, LIMIT), _fields(was, now, OUTCOME)
         if was and now and same_bound(was, now):
             written = [part for part in written if part[0] != "bound"]
@@ -105,6 +105,12 @@ def limits(old: Data, new: Data) -> list[dict[str, Any]]:
                  "bound_changed": not (was and now and same_bound(was, now))}
         found.append(entry if written or kind_of(was, now) != "changed" else {**entry, "kind": "moved"})
     return found
+
+
+def _limits(record: Data) -> dict[str, Entry]:
+    """The limits by id, each waiver as one text."""
+    return {name: {**one, "waiver": "{name}, {date}: {reason}".format(**one["waiver"]) if one.get("waiver") else None}
+            for name, one in by("id", record.get("limits")).items()}
 
 
 def same_bound(old: Entry, new: Entry) -> bool:
