@@ -49,12 +49,15 @@ def _texts(faults: Sequence[Fault]) -> dict[str, str]:
     return texts
 
 
-def _overrides(pairs: Sequence[str]) -> dict[str, str]:
-    found = {}
+def _overrides(pairs: Sequence[str], option: str = "--set", example: str = "--set T_e='2 degC'") -> dict[str, str]:
+    """``NAME=VALUE`` pairs of a repeated option."""
+    found: dict[str, str] = {}
     for pair in pairs:
         symbol, sign, value = pair.partition("=")
         if not sign or not symbol.strip() or not value.strip():
-            raise CommandError(Fault(f"--set {pair}: a symbol and a value are meant", expected="--set T_e='2 degC'"))
+            raise CommandError(Fault(f"{option} {pair}: a name and a value are meant", expected=example))
+        if symbol.strip() in found:
+            raise CommandError(Fault(f"{option} gives {symbol.strip()} twice", expected="each name once"))
         found[symbol.strip()] = value.strip()
     return found
 
@@ -78,7 +81,7 @@ def new(method: str, output: Path | None, options: tuple[str, ...]) -> int:
     """Write a commented spec with every input that METHOD takes."""
     from calcpack.methods.starter import starter
     from calcpack.writing import write_new
-    text = starter(method, _overrides(options))
+    text = starter(method, _overrides(options, "--option", "NAME=VALUE, as 'calcpack methods METHOD' lists them"))
     if output is None:
         click.echo(text, nl=False)
     else:
@@ -152,10 +155,10 @@ def compare(old: str, new: str, shape: str, output: Path | None) -> int:
 
     OLD and NEW are each a spec, a record, a PDF that carries one, or REV:path in git. Exit status 1 if they differ.
     """
-    from calcpack.revisions import differs, load, rendered
+    from calcpack.revisions import differs, folder_of, load, rendered
     from calcpack.revisions.compare import compare as compared
     from calcpack.writing import write_whole
-    comparison = compared(load(old), load(new))
+    comparison = compared(load(old), load(new), folder=folder_of(new))
     text = rendered(comparison, shape)
     if output is None:
         click.echo(text, nl=False)

@@ -135,7 +135,7 @@ def record_and_comparison(path: Path) -> tuple[Record, dict[str, Any] | None]:
     from calcpack.revisions import baseline_for, compare_records
     spec, record = _solved(path)
     baseline = baseline_for(spec, record)
-    return record, compare_records(baseline, record) if baseline is not None else None
+    return record, compare_records(baseline, record, folder=path.parent) if baseline is not None else None
 
 
 def spec_files(sources: Sequence[Path]) -> list[Path]:

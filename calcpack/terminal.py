@@ -90,10 +90,10 @@ def _verdict(status: str) -> str:
 
 
 def _limit_words(limit: Mapping[str, Any]) -> str:
-    """A limit's text; where it is waived, who answers for it and why."""
+    """A limit's text and margin; where it is waived, who answers for it and why."""
     waiver = limit.get("waiver")
     if limit.get("verdict") != "waived" or not waiver:
-        return limit["text"]
+        return f"{limit['text']}; margin {limit['margin']}"
     return f"{limit['text']}. Waived by {waiver['name']}, {waiver['date']}: {waiver['reason']}"
 
 
@@ -121,7 +121,7 @@ def progress(quiet: bool) -> Iterator[Callable[[str], None]]:
         with err.status("starting") as status:
             yield status.update
     else:
-        yield lambda text: err.print(text)
+        yield err.print
 
 
 def print_built(package: Package, folder: Path) -> None:

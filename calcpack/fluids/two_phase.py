@@ -194,8 +194,12 @@ class TwoPhaseFluid(Fluid):
     def _accept(self, given: Given) -> None:
         """After a flash: finite, and inside the range that was asked to hold."""
         state = self._state
-        T, p = state.T(), state.p()
-        finite = math.isfinite(T) and math.isfinite(p) and math.isfinite(state.hmass())
+        try:
+            # The industrial formulation computes on asking, and refuses then.
+            T, p, h = state.T(), state.p(), state.hmass()
+        except FLASH_ERRORS as error:
+            raise self._no_state(given, error) from error
+        finite = math.isfinite(T) and math.isfinite(p) and math.isfinite(h)
         if finite and self.T_min <= T <= self.T_max and 0.0 < p <= self.p_max:
             return
         words = wording.state(*given)

@@ -14,7 +14,18 @@ from calcpack.errors import FormulaError
 from calcpack.formula.parse import formula_fault
 from calcpack.formula.text import to_text
 from calcpack.formula.tree import (
-    CONSTANTS, Binary, Call, Compare, Logic, Negative, Node, Number, PropertyCall, Quantity, Symbol)
+    CONSTANTS,
+    Binary,
+    Call,
+    Compare,
+    Logic,
+    Negative,
+    Node,
+    Number,
+    PropertyCall,
+    Quantity,
+    Symbol,
+)
 from calcpack.units import DIMENSIONLESS, Dimension, dimension_text, unit
 
 TEMPERATURE: Dimension = unit("K").dimension

@@ -12,7 +12,18 @@ from types import ModuleType
 from typing import Any
 
 from calcpack.formula.tree import (
-    CONSTANTS, Binary, Call, Compare, Logic, Negative, Node, Number, PropertyCall, Quantity, Symbol)
+    CONSTANTS,
+    Binary,
+    Call,
+    Compare,
+    Logic,
+    Negative,
+    Node,
+    Number,
+    PropertyCall,
+    Quantity,
+    Symbol,
+)
 from calcpack.units import unit
 
 Values = Sequence[Any]

@@ -25,8 +25,7 @@ def break_lines(node: Node, room: float) -> list[Box]:
     if whole.width <= room:
         return [whole]
     lines: list[Box] = []
-    for piece in _pieces(node, room - INDENT):
-        piece = boxes.shrunk(piece, room - INDENT)
+    for piece in (boxes.shrunk(one, room - INDENT) for one in _pieces(node, room - INDENT)):
         if lines and lines[-1].width + piece.width <= room - INDENT:
             lines[-1] = boxes.row(lines[-1], piece)
         else:

@@ -6,11 +6,19 @@ from html import escape
 
 from calcpack.formula.boxes import MINUS
 from calcpack.formula.nodes import (
-    NUMBER, SIGNS, factors, is_numeric, is_simple_base, is_sum, shared_unit, shows_value_alone, times,
-    unit_text)
+    NUMBER,
+    SIGNS,
+    factors,
+    is_numeric,
+    is_simple_base,
+    is_sum,
+    shared_unit,
+    shows_value_alone,
+    times,
+    unit_text,
+)
 from calcpack.formula.symbols import parts
-from calcpack.formula.tree import (
-    Binary, Call, Compare, Logic, Negative, Node, Number, PropertyCall, Quantity, Symbol)
+from calcpack.formula.tree import Binary, Call, Compare, Logic, Negative, Node, Number, PropertyCall, Quantity, Symbol
 
 INVISIBLE_TIMES = "\u2062"
 APPLY = "\u2061"

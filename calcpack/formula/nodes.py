@@ -13,7 +13,19 @@ from calcpack.formula import boxes
 from calcpack.formula.boxes import MINUS, THIN, Box
 from calcpack.formula.symbols import is_named_by, is_word, symbol_box
 from calcpack.formula.tree import (
-    Binary, Call, Compare, Logic, Negative, Node, Number, PropertyCall, Quantity, Symbol, symbols_of, walk)
+    Binary,
+    Call,
+    Compare,
+    Logic,
+    Negative,
+    Node,
+    Number,
+    PropertyCall,
+    Quantity,
+    Symbol,
+    symbols_of,
+    walk,
+)
 
 TIMES = " × "
 SIGNS = {"+": " + ", "-": f" {MINUS} ", "*": TIMES,
@@ -72,7 +84,8 @@ def times(left: Node, right: Node, *, numeric: bool) -> str:
            for edge in (_edge(left, first=False), _edge(right, first=True))):
         return TIMES
     # The last letter of a subscript, an f above all, would touch the bracket.
-    subscripted = isinstance(_edge(left, first=False), Symbol) and "_" in _edge(left, first=False).name.replace("_dot", "")
+    before = _edge(left, first=False)
+    subscripted = isinstance(before, Symbol) and "_" in before.name.replace("_dot", "")
     return "" if is_sum(right) and not is_sum(left) and not subscripted else THIN
 
 

@@ -22,7 +22,18 @@ import math
 from calcpack.errors import Fault, FormulaError, Place, nearest
 from calcpack.formula.scan import Token, scan
 from calcpack.formula.tree import (
-    FUNCTIONS, Binary, Call, Compare, Logic, Negative, Node, Number, PropertyCall, Quantity, Symbol)
+    FUNCTIONS,
+    Binary,
+    Call,
+    Compare,
+    Logic,
+    Negative,
+    Node,
+    Number,
+    PropertyCall,
+    Quantity,
+    Symbol,
+)
 
 MAX_DEPTH = 40
 MAX_EXPONENT = 12.0

@@ -9,8 +9,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import replace
 
-from calcpack.formula.tree import (
-    Binary, Call, Compare, Logic, Negative, Node, Number, PropertyCall, Quantity, Symbol)
+from calcpack.formula.tree import Binary, Call, Compare, Logic, Negative, Node, Number, PropertyCall, Quantity, Symbol
 
 RANK = {"or": 1, "and": 2, "<": 3, "<=": 3, ">": 3, ">=": 3, "+": 4, "-": 4, "*": 5, "/": 5, "^": 7}
 _NEGATIVE = 6

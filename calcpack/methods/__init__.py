@@ -15,9 +15,24 @@ __all__ = ["Method", "Option", "Role", "methods"]
 def methods() -> dict[str, Method]:
     """Every method by its name, in the order they are listed to the user."""
     from calcpack.methods import (
-        carnot_bound, carnot_cycle, cascade, combined_plant, endoreversible_estimate, gas_engine, gas_turbine,
-        heat_driven, organic_rankine, own_steps, regenerative_gas_cycle, reversed_gas_cycle, steam_plant,
-        transcritical_co2, two_stage_compression, vapour_compression, vapour_recompression)
+        carnot_bound,
+        carnot_cycle,
+        cascade,
+        combined_plant,
+        endoreversible_estimate,
+        gas_engine,
+        gas_turbine,
+        heat_driven,
+        organic_rankine,
+        own_steps,
+        regenerative_gas_cycle,
+        reversed_gas_cycle,
+        steam_plant,
+        transcritical_co2,
+        two_stage_compression,
+        vapour_compression,
+        vapour_recompression,
+    )
     found = (carnot_bound.METHOD, carnot_cycle.METHOD, vapour_compression.METHOD,
              two_stage_compression.METHOD, cascade.METHOD, transcritical_co2.METHOD,
              vapour_recompression.METHOD, organic_rankine.METHOD, steam_plant.METHOD, combined_plant.METHOD,

@@ -91,7 +91,8 @@ def _bound(plan: Plan, hot: str, cold: str) -> None:
             section.formula("W_dot_rev", "eta_rev * Q_dot_h", "Reversible power", "kW")
             section.formula("Q_dot_c", "Q_dot_h - W_dot_rev", "Heat given at the cold side", "kW")
         case "heat-pump":
-            section.formula("COP_rev", f"{hot} / ({hot} - {cold})", "Coefficient of performance of the reversible heat pump",
+            section.formula("COP_rev", f"{hot} / ({hot} - {cold})",
+                            "Coefficient of performance of the reversible heat pump",
                             reference=CARNOT)
             section.formula("W_dot_rev", "Q_dot_h / COP_rev", "Least power for this heat", "kW")
             section.formula("Q_dot_c", "Q_dot_h - W_dot_rev", "Heat taken at the cold side", "kW")
@@ -134,7 +135,8 @@ def _dead_state(plan: Plan) -> None:
             ends.property(f"{letter}_source_{tag}", f"{letter}(source, p=p_source, T={temperature})",
                           f"Specific {name} of the source {word}")
     section = plan.section("Maximum work")
-    section.formula("Q_dot_h", "m_dot_source * (h_source_in - h_source_0)", "Heat given up down to the dead state", "kW")
+    section.formula("Q_dot_h", "m_dot_source * (h_source_in - h_source_0)",
+                    "Heat given up down to the dead state", "kW")
     section.formula("e_source", "(h_source_in - h_source_0) - T_0 * (s_source_in - s_source_0)",
                     "Specific flow exergy of the source", "kJ/kg",
                     reference="flow exergy without kinetic, potential and chemical parts")
@@ -145,7 +147,8 @@ def _dead_state(plan: Plan) -> None:
                    "Entropic mean temperature of the heat given up", "degC")
     second.formula("eta_rev", "1 - T_0 / T_m_source", "Efficiency of the reversible engine", reference=CARNOT)
     second.formula("W_dot_rev_2", "eta_rev * Q_dot_h", "Maximum power, second way", "kW")
-    plan.facts.streams.append(StreamLine("Source, cooled to the dead state", "source", "m_dot_source", "T_source_in", "T_0",
+    plan.facts.streams.append(StreamLine("Source, cooled to the dead state", "source", "m_dot_source",
+                                         "T_source_in", "T_0",
                                          "p_source", "h_source_in", "h_source_0", "Q_dot_h"))
     plan.facts.again.append(Again("Q_dot_c", "T_0 * m_dot_source * (s_source_in - s_source_0)",
                                   "the entropy that the stream gives up, at the dead state's temperature"))
@@ -163,7 +166,8 @@ def _real(plan: Plan) -> None:
         section.formula("eta_real", "W_dot_real / Q_dot_h", "Efficiency of the real machine")
         section.formula("g_rev", "W_dot_real / W_dot_rev", "Share of the bound that it reaches")
         section.formula("W_dot_lost", "W_dot_rev - W_dot_real", "Power given away", "kW")
-        plan.facts.bounds.append(Bound("W_dot_real", "W_dot_rev", "the real engine gives no more than the reversible one"))
+        plan.facts.bounds.append(Bound(
+            "W_dot_real", "W_dot_rev", "the real engine gives no more than the reversible one"))
         return
     heat = "Q_dot_h" if plan.options["machine"] == "heat-pump" else "Q_dot_c"
     section.formula("COP_real", f"{heat} / W_dot_real", "Coefficient of performance of the real machine")

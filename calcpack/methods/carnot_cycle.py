@@ -80,7 +80,8 @@ def _corners(plan: Plan) -> None:
                         reference=adiabat)
         section.formula(f"p_{corner}", f"n * R_m * T_c / V_{corner}", f"Pressure at corner {corner}", "bar",
                         reference=law)
-    section.formula("k_23", "(p_3 / p_2) * (V_3 / V_2)^gamma", "Adiabat from 2 to 3: p V^γ at its end over that at its start",
+    section.formula("k_23", "(p_3 / p_2) * (V_3 / V_2)^gamma",
+                    "Adiabat from 2 to 3: p V^γ at its end over that at its start",
                     note="must be 1")
     section.formula("one", "1", "The value that the ratio must have")
     plan.facts.equals.append(Equal("k_23", "one", "p V^γ is constant along the adiabat from 2 to 3", 1e-12))

@@ -244,7 +244,7 @@ class _Layer:
     def lookup(self, step: LookupStep, number: str) -> LaidStep:
         tree = parse(step.formula)
         of = self.measured(tree, step.formula)
-        first, value = (read_quantity(text) for text in step.points[0])
+        value = read_quantity(step.points[0][1])
         for x, y in step.points:
             a, b = read_quantity(x), read_quantity(y)
             if a.unit.dimension != of.dimension or b.unit.dimension != value.unit.dimension:

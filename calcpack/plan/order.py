@@ -72,7 +72,7 @@ def _circle(waiting: Sequence[Step], uses: Mapping[str, Sequence[str]], placed: 
     while True:
         after = next(name for name in uses[path[-1]] if name in own and name not in placed)
         if after in path:
-            loop = path[path.index(after):] + [after]
+            loop = [*path[path.index(after):], after]
             break
         path.append(after)
     first = min((own[name] for name in loop), key=lambda step: (step.place.line, step.place.column)

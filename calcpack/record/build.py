@@ -1,6 +1,7 @@
 """A solution and its findings to the record, every part of the sheet in it."""
 from __future__ import annotations
 
+import hashlib
 import platform
 from dataclasses import asdict
 from importlib.metadata import version
@@ -8,20 +9,21 @@ from typing import TYPE_CHECKING, Any
 
 import calcpack
 from calcpack.fluids.definition import FluidDefinition
-from calcpack.record.constants import constant_entries
+from calcpack.record.constants import constant_entries, zero_words
 from calcpack.record.identity import input_identity
 from calcpack.record.record import FORMAT, Record
 from calcpack.record.steps import step_entries
 from calcpack.record.views import exchangers, sketch, states, streams
 from calcpack.solving.curves import diagrams
 from calcpack.solving.solution import Solution, celsius_twin
-from calcpack.spec.safety import QUANTITIES
 from calcpack.solving.tolerances import uncertainty
+from calcpack.spec.safety import QUANTITIES
 from calcpack.units import print_unit, read_quantity, shown_with_unit, unit
 from calcpack.units.digits import decimals_for, number_text
 
 if TYPE_CHECKING:
     from calcpack.checks import Findings
+    from calcpack.spec import Spec
 
 LIBRARIES = ("CoolProp", "pint", "numpy", "scipy", "PyYAML", "pydantic")
 
@@ -46,8 +48,10 @@ def build_record(solution: Solution) -> Record:
         "revisions": [asdict(one) for one in spec.revisions],
         "states": states(solution), "streams": streams(solution), "exchangers": exchangers(solution),
         "diagrams": diagrams(solution), "sketch": sketch(solution),
-        "uncertainty": uncertainty(solution), "limits": [], "usual_limits": [], "checks": [], "cautions": [], "exergy": None, "ladder": None,
+        "uncertainty": uncertainty(solution), "limits": [], "usual_limits": [], "checks": [],
+        "cautions": [], "exergy": None, "ladder": None,
         "engine": engine(solution), "spec_sha256": spec.sha256, "spec_file": spec.file.rsplit("/", 1)[-1],
+        "spec_text": _spec_text(spec),
     }
     return Record(data)
 
@@ -57,6 +61,12 @@ def with_findings(record: Record, findings: Findings) -> Record:
     return Record({**record.data, "limits": list(findings.limits), "usual_limits": list(findings.usual_limits),
                    "checks": list(findings.checks),
                    "cautions": list(findings.cautions), "exergy": findings.exergy, "ladder": findings.ladder})
+
+
+def _spec_text(spec: Spec) -> str:
+    """The file's text, of which ``spec_sha256`` is the hash: the mark of order that it may begin with is put back."""
+    whole = hashlib.sha256(spec.text.encode("utf-8")).hexdigest() == spec.sha256
+    return spec.text if whole else "\ufeff" + spec.text
 
 
 def _sheet(solution: Solution) -> dict[str, Any]:
@@ -101,7 +111,7 @@ def _safety(solution: Solution) -> dict[str, Any]:
 
 def _fluid(fluid: Any, title: str, stated: FluidDefinition | None, system: str) -> dict[str, Any]:
     return {"title": title, "designation": fluid.designation, "stated": stated.words if stated else "",
-            "model": fluid.model, "equation": fluid.equation, "reference_state": fluid.reference_state,
+            "model": fluid.model, "equation": fluid.equation, "reference_state": zero_words(fluid, system),
             "range": fluid.range_text, "identity": fluid.identity,
             "constants": constant_entries(fluid, system), "facts": [asdict(fact) for fact in fluid.facts]}
 

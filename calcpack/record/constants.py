@@ -6,7 +6,7 @@ from typing import Any
 from calcpack.errors import CalcpackError
 from calcpack.fluids.wording import CONSTANTS
 from calcpack.solving.solution import celsius_twin
-from calcpack.units import print_unit, unit
+from calcpack.units import print_unit, shown_with_unit, unit
 from calcpack.units.digits import decimals_for, number_text
 
 PRINTED = {"M": "g/mol", "T_crit": "K", "p_crit": "bar", "T_triple": "K", "T_freeze": "K", "T_min": "K",
@@ -39,3 +39,28 @@ def _value(fluid: Any, symbol: str) -> float | None:
     except CalcpackError:
         # A blend whose critical point is not found has none to print.
         return None
+
+
+def zero_words(fluid: Any, system: str) -> str:
+    """Where h and s are zero, with their values at a state that a reader finds in any table.
+
+    That state is the saturated liquid at 0 °C, or, where there is none, at one
+    atmosphere; gases and liquids without a saturation line say it in words.
+    """
+    for words, pair, state in _TABLE_STATES:
+        try:
+            h, s = (fluid.reader(letter, pair)(*state) for letter in ("h", "s"))
+        except CalcpackError:
+            # The fluid has no such state, or its model no such pair.
+            continue
+        shown = [shown_with_unit(number_text(shown_in.from_si(value) + 0.0, decimals), shown_in)
+                 for value, shown_in, decimals in (
+                     (h, print_unit(unit("kJ/kg").dimension, system), 2),
+                     (s, print_unit(unit("kJ/(kg·K)").dimension, system), 4))]
+        return f"{fluid.reference_state}; {words}: h = {shown[0]}, s = {shown[1]}"
+    return fluid.reference_state
+
+
+_TABLE_STATES = (("saturated liquid at 0 °C", ("T", "x"), (273.15, 0.0)),
+                 ("saturated liquid at 0.01 °C", ("T", "x"), (273.16, 0.0)),
+                 ("saturated liquid at 101.325 kPa", ("p", "x"), (101325.0, 0.0)))

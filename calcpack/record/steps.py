@@ -35,7 +35,8 @@ def _entry(solution: Solution, step: LaidStep, identities: dict[str, str]) -> di
     if detail is not None:
         entry[_NAMES.get(step.kind, step.kind)] = detail(solution, step)
     identities[symbol] = entry["identity"] = step_identity(
-        symbol, step.kind, _formulas(solution, step), step.unit.symbol, _reads(solution, step), identities, _fluids(solution, step))
+        symbol, step.kind, _formulas(solution, step), step.unit.symbol, _reads(solution, step), identities,
+        _fluids(solution, step))
     return entry
 
 

@@ -8,6 +8,7 @@ from markupsafe import Markup
 
 from calcpack.render import quantities
 from calcpack.render.pages import Ground, anchor, link
+from calcpack.revisions.share_table import HEADING, TOGETHER, Column, share_table
 
 Data = Mapping[str, Any]
 
@@ -20,6 +21,9 @@ TEXTS = (("sheet", "Title block"), ("options", "Options of the method"), ("fluid
          ("checks", "Checks"), ("cautions", "Cautions"), ("engine", "Program and libraries"))
 """What is told by text: before and now."""
 
+ABREAST = 7
+"""So many results stand side by side across a page."""
+
 SAID_ABOVE = ("Title block", "Reference")
 """Titles of changes that only repeat the head of their table."""
 
@@ -31,9 +35,29 @@ def changes(ground: Ground) -> dict[str, Any] | None:
         return None
     moved = [one for one in comparison.get("steps") or () if one.get("kind") == "moved"]
     return {"against": comparison["against"], "letter": comparison["letter"], "marks": ground.marks.count,
-            "numbers": _tables(ground, NUMBERS), "texts": _tables(ground, TEXTS),
+            "numbers": _tables(ground, NUMBERS), "shares": _shares(ground), "texts": _tables(ground, TEXTS),
             "moved": Markup(", ").join(link(anchor("step", one["step"]), one["step"]) for one in moved),
             "moved_count": len(moved), "notes": comparison.get("notes") or ()}
+
+
+def _shares(ground: Ground) -> dict[str, Any] | None:
+    """How much each cause moved each result; None where no result was changed."""
+    table = share_table(ground.comparison)
+    if table is None:
+        return None
+    causes = [*map(ground.prose, table.causes), TOGETHER]
+    tables = [_share_columns(ground, causes, table.columns[at:at + ABREAST])
+              for at in range(0, len(table.columns), ABREAST)]
+    return {"caption": HEADING, "tables": tables, "note": ground.prose(" ".join(table.notes))}
+
+
+def _share_columns(ground: Ground, causes: Sequence[str], columns: Sequence[Column]) -> dict[str, Any]:
+    """A table of so many results as stand abreast, a row a cause."""
+    numbers = [[quantities.prose(number or "–") for number in (*column.numbers, column.whole)] for column in columns]
+    return {"columns": [{"symbol": _what(ground, {"symbol": column.symbol}), "unit": quantities.unit(column.unit)}
+                        for column in columns],
+            "rows": [{"cause": cause, "numbers": row}
+                     for cause, row in zip(causes, zip(*numbers, strict=True), strict=True)]}
 
 
 def _tables(ground: Ground, kinds: tuple[tuple[str, str], ...]) -> list[dict[str, Any]]:

@@ -63,7 +63,11 @@ def title_block(ground: Ground) -> dict[str, Any]:
     return {"sheet": sheet, "status": status_words(ground.record), "date": sheet_date(ground.record),
             "standing": standing(ground.record),
             "signatures": [{"title": title, "signature": signoff.get(role)} for role, title in SIGNATURES],
-            "limits": len(ground.items("limits")), "marks": ground.marks, "hash": ground.record["spec_sha256"][:12]}
+            "limits": len(ground.items("limits")),
+            "cautions": sum(one["status"] == "triggered" for one in ground.items("cautions")),
+            "unproved": [row["id"] for row in (ground.record.get("uncertainty") or {}).get("limits", ())
+                         if row["verdict"].startswith("margin smaller")],
+            "marks": ground.marks, "hash": ground.record["spec_sha256"][:12]}
 
 
 def status_words(record: Data) -> str:

@@ -14,7 +14,8 @@ def register_html(records: Sequence[Record], stems: Sequence[str], *, pdf: bool)
     """The register page; ``stems`` are the names of the sheets' files."""
     rows = [_row(record, stem) for record, stem in zip(records, stems, strict=True)]
     return environment().get_template("register.html").render(
-        rows=rows, pdf=pdf, fluids=register_fluids(records), projects=list(dict.fromkeys(row["sheet"]["project"] for row in rows)),
+        rows=rows, pdf=pdf, fluids=register_fluids(records),
+        projects=list(dict.fromkeys(row["sheet"]["project"] for row in rows)),
         open=sum(bool(row["standing"].holds) for row in rows),
         failing=sum(bool(row["standing"].failed_limits) for row in rows),
         versions=sorted({record.data["engine"]["calcpack"] for record in records}),

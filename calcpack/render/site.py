@@ -78,6 +78,7 @@ def build_site(items: Sequence[Item], folder: Path, *, pdf: bool = True, jobs: i
         names = sorted(names)
         (aside / MANIFEST).write_text(json.dumps({"calcpack site": 1, "files": names}, indent=1) + "\n", "utf-8")
         former = _former(folder)
+        _require_ours(folder, names, former)
         _move(aside, folder, names)
         _remove(folder, former - set(names))
     return Site(tuple(folder / name for name in names), open_points)
@@ -201,6 +202,14 @@ def _former(folder: Path) -> set[str]:
         return set()
     names = data.get("files") if isinstance(data, dict) else None
     return {name for name in names if isinstance(name, str) and _inside(name)} if isinstance(names, list) else set()
+
+
+def _require_ours(folder: Path, names: Sequence[str], former: set[str]) -> None:
+    """Refuse to write over a file that no former build wrote."""
+    foreign = sorted(name for name in names if name not in former and (folder / name).is_file())
+    if foreign:
+        raise CommandError(Fault(f"{folder} holds files that calcpack did not write", found=", ".join(foreign[:3]),
+                                 hint="name another folder with -o, or move them away"))
 
 
 def _inside(name: str) -> bool:

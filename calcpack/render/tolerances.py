@@ -15,7 +15,8 @@ def uncertainty(ground: Ground) -> dict[str, Any] | None:
     tolerances = {one["symbol"]: one for one in ground.items("inputs")}
     heads = [quantities.symbol(row["symbol"]) for row in entry["results"]]
     names = [row["symbol"] for row in entry["results"]]
-    rows = [{"symbol": quantities.symbol(row["symbol"]), "tolerance": ground.prose(_tolerance(tolerances, row["symbol"])),
+    rows = [{"symbol": quantities.symbol(row["symbol"]),
+             "tolerance": ground.prose(_tolerance(tolerances, row["symbol"])),
              "effects": [_effect(ground, row["effects"][name]) for name in names]} for row in entry["inputs"]]
     return {"heads": heads, "rows": rows,
             "combined": [_cell(ground, row["combined"], row["percent"]) for row in entry["results"]],

@@ -84,7 +84,7 @@ class _Anew:
                 if isinstance(step.detail, RootLines):
                     found.append(self.residual(at, step, step.detail))
                 if isinstance(step.detail, OptimumLines):
-                    found += self.curve(at, step, step.detail)
+                    found += self.curve(at, step, step.detail, left_out)
                 if isinstance(step.detail, CaseLines):
                     for row in step.detail.rows:
                         found += self.row(at, step, step.detail, row, left_out)
@@ -195,12 +195,15 @@ class _Anew:
 
         def left(trial: float) -> float:
             return self.equation(at, root.equation, trial, values)
-        for width in (*NEAR, None):
-            low, high = self.bracket(root, values) if width is None else \
-                (at_printed - width * place, at_printed + width * place)
+        for width in NEAR:
+            low, high = at_printed - width * place, at_printed + width * place
             f_low, f_high = left(low), left(high)
-            if f_low == 0.0 or f_high == 0.0 or f_low * f_high < 0.0:
+            if f_low * f_high <= 0.0:
                 return closed_in(left, low, high, f_low, f_high)
+        low, high = self.bracket(root, values)
+        (low, f_low), (high, f_high) = usable(left, low, high), usable(left, high, low)
+        if f_low * f_high <= 0.0:
+            return closed_in(left, low, high, f_low, f_high)
         raise UnreadableError("the equation has no solution next to the printed one or in its bracket")
 
     def bracket(self, root: RootLines, values: Mapping[str, float]) -> tuple[float, float]:
@@ -209,13 +212,17 @@ class _Anew:
                      for end in root.ends)
         return low, high
 
-    def curve(self, at: int, step: PrintedStep, optimum: OptimumLines) -> list[Found]:
+    def curve(self, at: int, step: PrintedStep, optimum: OptimumLines, left_out: list[str]) -> list[Found]:
         """The objective at each printed point; half a place of the printed point is open."""
         found = []
         for x, y in optimum.curve:
             half = 0.5 * last_place(x) * unit(x.unit).factor
-            value, beside = (self.equation(at, optimum.objective, si_value(x) + aside, self.values)
-                             for aside in (0.0, half))
+            try:
+                value, beside = (self.equation(at, optimum.objective, si_value(x) + aside, self.values)
+                                 for aside in (0.0, half))
+            except _CANNOT:
+                left_out.append(f"{step.id}, at {x}")
+                continue
             one = compared(f"step {step.id}, at {x}", "the objective", y, value)
             found.append(within(one, abs(beside - value) / (last_place(y) * unit(y.unit).factor)))
         return found
@@ -242,6 +249,20 @@ def _between(lookup: LookupLines, x: float) -> float:
         if x0 <= x <= x1:
             return y0 + (y1 - y0) * (x - x0) / (x1 - x0)
     raise UnreadableError("the value looked up is outside the printed table")
+
+
+INWARDS = (0.0, 1 / 128, 1 / 64, 1 / 32, 1 / 16, 1 / 8, 1 / 4, 3 / 8)
+
+
+def usable(left: Callable[[float], float], end: float, other: float) -> tuple[float, float]:
+    """An end of a bracket and the equation there; it moves inwards to where the equation can be reckoned."""
+    for share in INWARDS:
+        trial = end + share * (other - end)
+        try:
+            return trial, left(trial)
+        except _CANNOT:
+            continue
+    raise UnreadableError("the equation can be reckoned nowhere near this end of its bracket")
 
 
 def closed_in(left: Callable[[float], float], low: float, high: float, f_low: float, f_high: float) -> float:

@@ -11,10 +11,14 @@ from calcpack.formula.symbols import GREEK
 from calcpack.review.linear import BELOW, BELOW_END, MARKS
 from calcpack.review.printed_page import PrintedFluid
 from calcpack.review.reading import UnreadableError
+from calcpack.review.reckoning import places_apart, si_value
+from calcpack.review.step_reader import loose_value
 from calcpack.review.terms import LookUp
+from calcpack.units import unit
 
 _LETTERS = {letter: name for name, letter in GREEK.items()}
-_CHECKED = (("Equation", "equation"), ("Reference state", "reference_state"), ("Range", "range_text"))
+_CHECKED = (("Equation", "equation"), ("Range", "range_text"), ("Model", "model"))
+ZERO = re.compile(r"; saturated liquid at (?P<at>.+?): h = (?P<h>.+?), s = (?P<s>.+)")
 
 
 def definition_from(words: str) -> FluidDefinition:
@@ -50,13 +54,30 @@ def open_printed(fluid: PrintedFluid) -> Any:
         opened = open_fluid(definition_from(fluid.facts.get("As stated", fluid.designation)))
     except CalcpackError as error:
         raise UnreadableError(f"fluid {fluid.number} cannot be opened by what is printed of it: {error}") from None
-    for heading, name in (*_CHECKED, ("Model", "model")):
+    for heading, name in _CHECKED:
         words = " ".join(getattr(opened, name).split())
         if fluid.facts.get(heading, words) != words:
             raise UnreadableError(f"fluid {fluid.number}: {heading.lower()} printed is not that of the fluid as stated")
     if opened.designation != fluid.designation:
         raise UnreadableError(f"fluid {fluid.number} is printed as {fluid.designation}, stated as {opened.designation}")
+    _require_zero(fluid, opened)
     return opened
+
+
+def _require_zero(fluid: PrintedFluid, opened: Any) -> None:
+    """The zero of h and s must be that of the opened fluid, and its printed values at saturated liquid too."""
+    printed, words = fluid.facts.get("Reference state", ""), " ".join(opened.reference_state.split())
+    found = ZERO.fullmatch(printed.removeprefix(words))
+    if not printed or printed == words:
+        return
+    if not printed.startswith(words) or found is None:
+        raise UnreadableError(f"fluid {fluid.number}: reference state printed is not that of the fluid as stated")
+    at = loose_value(found["at"]).number
+    known = "p" if unit(at.unit).dimension == unit("Pa").dimension else "T"
+    for letter in ("h", "s"):
+        value = opened.reader(letter, (known, "x"))(si_value(at), 0.0)
+        if abs(places_apart(loose_value(found[letter]).number, value)) > 1.0:
+            raise UnreadableError(f"fluid {fluid.number}: {letter} printed at saturated liquid is not its own")
 
 
 def property_name(look: str) -> str:

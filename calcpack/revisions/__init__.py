@@ -7,6 +7,6 @@ from calcpack.revisions.baseline import baseline_for
 from calcpack.revisions.compare import compare as compare_records
 from calcpack.revisions.compare import differs
 from calcpack.revisions.rendered import rendered
-from calcpack.revisions.sources import load
+from calcpack.revisions.sources import folder_of, load
 
-__all__ = ["baseline_for", "compare_records", "differs", "load", "rendered"]
+__all__ = ["baseline_for", "compare_records", "differs", "folder_of", "load", "rendered"]

@@ -8,13 +8,10 @@ from typing import TYPE_CHECKING
 from calcpack.errors import CommandError, Fault
 from calcpack.record import Record, read_record
 from calcpack.revisions.order import place_in_order
-from calcpack.revisions.sources import load
+from calcpack.revisions.sources import ISSUED_IN, load
 
 if TYPE_CHECKING:
     from calcpack.spec import Spec
-
-FOLDER = "issued"
-"""The folder beside a spec that keeps what was issued."""
 
 
 def baseline_for(spec: Spec, record: Record) -> Record | None:
@@ -37,7 +34,7 @@ def baseline_for(spec: Spec, record: Record) -> Record | None:
             return load(spec.sheet.baseline, folder)
         except CommandError as error:
             raise error.at(spec.place("sheet", "baseline")) from None
-    return _last_issued(folder / FOLDER, record)
+    return _last_issued(folder / ISSUED_IN, record)
 
 
 def _last_issued(folder: Path, record: Record) -> Record | None:

@@ -1,7 +1,7 @@
 """A moved value to what changed upstream of it: inputs, options, fluids, formulas, the program.
 
 A change is named where a chain of moved values leads from it to the result;
-how much each of several has moved it is not said.
+how much each of several has moved it, :mod:`attribution` says.
 """
 from __future__ import annotations
 

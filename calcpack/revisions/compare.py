@@ -1,13 +1,16 @@
 """Two records to one comparison: what was edited, what moved because of it, what carries a mark.
 
-Nothing is computed anew; both records say what their sheets print.
+What is listed, both records say; :mod:`attribution` alone solves anew, for how
+much each change moved a result.
 """
 from __future__ import annotations
 
 from collections.abc import Mapping
+from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from calcpack.revisions import definitions, entries, values
+from calcpack.revisions.attribution import attribution
 from calcpack.revisions.causes import Upstream, causes
 
 if TYPE_CHECKING:
@@ -18,7 +21,7 @@ CONTENT = ("sheet", "inputs", "options", "fluids", "formulas", "choices", "assum
 """The keys of a comparison whose lists are empty where the two sheets say the same."""
 
 
-def compare(old: Record, new: Record, *, source: str | None = None) -> dict[str, Any]:
+def compare(old: Record, new: Record, *, source: str | None = None, folder: Path | None = None) -> dict[str, Any]:
     """What changed from ``old`` to ``new``, as plain data for JSON.
 
     Parameters
@@ -27,6 +30,8 @@ def compare(old: Record, new: Record, *, source: str | None = None) -> dict[str,
         Two revisions of a sheet; of two different sheets, ``sheet`` says so.
     source : str, optional
         Where the old record comes from, for the reader; else its spec's name.
+    folder : Path, optional
+        The folder of the specs, for files of rows that they name; else the current one.
 
     Returns
     -------
@@ -39,17 +44,20 @@ def compare(old: Record, new: Record, *, source: str | None = None) -> dict[str,
         ``changed_ids`` name what carries a mark on the new sheet, ``marks``
         counts the marks of inputs, steps, results, assumptions and limits.
         ``engine`` lists versions that are not the same; ``notes`` the lines of
-        the revision history that are new.
+        the revision history that are new. ``attribution`` has each changed
+        result's parts by cause, see :func:`attribution.attribution`;
+        ``attribution_note`` says why, where it has none.
     """
     before, after = old.data, new.data
     found = _content(before, after)
     found["engine"] = entries.program(before, after)
     _add_causes(before, after, found)
+    parts, note = attribution(before, after, found, folder if folder is not None else Path())
     edited = _edited(after, found)
     return {"against": {**_named(before), "source": source or before.get("spec_file")}, "of": _named(after),
             "letter": after["sheet"]["revision"], **found, "notes": _notes(before, after),
             "edited": edited, "moved_only": [one["symbol"] for one in found["steps"] if one["kind"] == "moved"],
-            **_marks(after, found)}
+            "attribution": parts, "attribution_note": note, **_marks(after, found)}
 
 
 def differs(comparison: Mapping[str, Any]) -> bool:

@@ -5,6 +5,7 @@ import re
 from html import escape
 
 from calcpack.revisions.outline import Outline, Part, Row
+from calcpack.revisions.share_table import HEADING, TOGETHER, ShareTable
 
 _FOLDED = "Values that moved"
 _CODE = ("Formulas and steps",)
@@ -50,7 +51,24 @@ def _part(part: Part) -> str:
     table = f'<div class="wide"><table>\n<thead><tr>{head}</tr></thead>\n<tbody>\n{rows}\n</tbody>\n</table></div>'
     if part.heading == _FOLDED:
         table = f"<details><summary>{len(part.rows)} in all</summary>\n{table}\n</details>"
-    return f"<section>\n<h2>{escape(part.heading)}</h2>\n{table}\n</section>"
+    shares = _shares(part.shares) if part.shares else ""
+    return f"<section>\n<h2>{escape(part.heading)}</h2>\n{table}\n{shares}</section>"
+
+
+def _shares(table: ShareTable) -> str:
+    """A row a cause, a column a result."""
+    notes = "".join(f"<p>{_text(note)}</p>\n" for note in table.notes)
+    if not table.columns:
+        return notes
+    head = "".join(f'<th scope="col"><code>{escape(column.symbol)}</code> {escape(column.unit)}</th>'
+                   for column in table.columns)
+    rows = [(text, [number or "–" for number in numbers]) for text, numbers in table.rows]
+    rows.append((TOGETHER, [column.whole for column in table.columns]))
+    body = "\n".join(f'<tr><th scope="row">{_text(text)}</th>' + "".join(
+        f'<td class="change" data-name="{escape(column.symbol)}">{_text(number)}</td>'
+        for column, number in zip(table.columns, numbers, strict=True)) + "</tr>" for text, numbers in rows)
+    return f'<div class="wide"><table>\n<thead><tr><th scope="col">{HEADING}</th>{head}</tr></thead>\n' \
+           f"<tbody>\n{body}\n</tbody>\n</table></div>\n{notes}"
 
 
 def _row(row: Row, changes: bool, formulas: bool) -> str:

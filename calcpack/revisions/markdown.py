@@ -5,6 +5,7 @@ import re
 from collections.abc import Iterable
 
 from calcpack.revisions.outline import Outline, Part, Row
+from calcpack.revisions.share_table import HEADING, TOGETHER, ShareTable
 
 _MARKS = re.compile(r"([\\`*_\[\]<>|~#])")
 _CODE = ("Formulas and steps",)
@@ -34,7 +35,20 @@ def _part(part: Part) -> str:
                *(["Follows from"] if any(row.because for row in part.rows) else [])]
     rows = [_line(columns), _line("---" for _ in columns)]
     rows += [_line(_cells(row, columns, part.heading in _CODE)) for row in part.rows]
-    return f"## {part.heading}\n\n" + "\n".join(rows)
+    blocks = [f"## {part.heading}", "\n".join(rows), *(_shares(part.shares) if part.shares else ())]
+    return "\n\n".join(blocks)
+
+
+def _shares(table: ShareTable) -> list[str]:
+    """A row a cause, a column a result."""
+    if not table.columns:
+        return [escaped(note) for note in table.notes]
+    columns = [HEADING, *(code(column.symbol) + (f", {escaped(column.unit)}" if column.unit else "")
+                          for column in table.columns)]
+    rows = [_line(columns), _line("---" for _ in columns),
+            *(_line([escaped(text), *(escaped(number or "–") for number in numbers)]) for text, numbers in table.rows),
+            _line([TOGETHER, *(escaped(column.whole) for column in table.columns)])]
+    return ["\n".join(rows), *(escaped(note) for note in table.notes)]
 
 
 def _cells(row: Row, columns: list[str], formulas: bool) -> list[str]:

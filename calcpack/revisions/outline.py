@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from calcpack.revisions.compare import differs
+from calcpack.revisions.share_table import ShareTable, share_table
 
 Data = Mapping[str, Any]
 
@@ -36,10 +37,11 @@ class Row:
 
 @dataclass(frozen=True, slots=True)
 class Part:
-    """A heading with its changes."""
+    """A heading with its changes; of the results, how much each cause moved them."""
 
     heading: str
     rows: tuple[Row, ...]
+    shares: ShareTable | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -56,7 +58,8 @@ class Outline:
 def outline(comparison: Data) -> Outline:
     """The outline of a comparison; parts without a change are left out."""
     of, against = comparison["of"], comparison["against"]
-    parts = tuple(Part(heading, tuple(_row(key, one) for one in rows))
+    shares = {"results": share_table(comparison)}
+    parts = tuple(Part(heading, tuple(_row(key, one) for one in rows), shares.get(key))
                   for key, heading in HEADINGS if (rows := comparison[key]))
     return Outline(f"{of['number']} {of['title']}",
                    f"Revision {of['revision']} ({of['status']}) against revision {against['revision']} "

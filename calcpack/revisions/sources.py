@@ -11,6 +11,8 @@ from calcpack.record import Record, read_record
 SPECS = (".yaml", ".yml")
 RECORDS = (".json",)
 ISSUED = (".pdf",)
+ISSUED_IN = "issued"
+"""The folder beside a spec that keeps what was issued."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -53,6 +55,14 @@ def load(text: str, base: Path | None = None) -> Record:
         return _carried(found)
     raise CommandError(Fault(f"{found.name} is no spec, record or issued PDF by its name",
                              expected="a file in " + ", ".join((*SPECS, *RECORDS, *ISSUED))))
+
+
+def folder_of(text: str, base: Path | None = None) -> Path:
+    """The folder that the spec of what ``text`` names lies in; a kept record's is the one above ``issued/``."""
+    folder = base if base is not None else Path.cwd()
+    inside = text if (folder / text).is_file() else text.partition(":")[2]
+    found = (folder / PurePosixPath(inside)).parent if inside else folder
+    return found.parent if found.name == ISSUED_IN else found
 
 
 def _find(text: str, folder: Path) -> Found:
@@ -114,7 +124,7 @@ def _carried(found: Found) -> Record:
     if len(attached) != 1:
         carries = "several files that may be its record" if attached else "no record"
         raise CommandError(Fault(f"{found.name} carries {carries}", found=", ".join(sorted(attached)) or None,
-                                 expected="a PDF that 'calcpack issue' wrote",
+                                 expected="a PDF with one record attached",
                                  hint="name the record itself, if you have it"))
     [(name, content)] = attached.items()
     return _record(content, f"{found.name}: {name}")

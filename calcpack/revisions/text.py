@@ -5,6 +5,7 @@ import textwrap
 import unicodedata
 
 from calcpack.revisions.outline import Outline, Part, Row
+from calcpack.revisions.share_table import HEADING, TOGETHER, ShareTable
 
 COLUMNS = 80
 
@@ -22,7 +23,19 @@ def _part(part: Part) -> list[str]:
     lines = [part.heading, "-" * len(part.heading)]
     for row in part.rows:
         lines += _row(row)
-    return lines
+    return [*lines, *_shares(part.shares)] if part.shares else lines
+
+
+def _shares(table: ShareTable) -> list[str]:
+    """Result by result, each part before the change that it comes from, and their sum."""
+    lines = ["", f"{HEADING}:"] if table.columns else [""]
+    for column in table.columns:
+        lines.append(_plain(column.head))
+        told = [(number, text) for text, number in zip(table.causes, column.numbers, strict=True) if number]
+        told.append((column.whole, TOGETHER))
+        width = max(len(number) for number, _ in told)
+        lines += [_wrapped(text, f"    {number:>{width}}  ", " " * (width + 8)) for number, text in told]
+    return lines + [_wrapped(note) for note in table.notes]
 
 
 def _row(row: Row) -> list[str]:

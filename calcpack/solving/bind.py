@@ -5,6 +5,7 @@ told at once.
 """
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
@@ -24,6 +25,8 @@ from calcpack.units import Reading, kind_of_unit, print_unit, read_quantity
 
 if TYPE_CHECKING:
     from calcpack.spec import Spec
+
+_NAMES = re.compile(r"[A-Za-z][A-Za-z0-9]*(?:_[A-Za-z0-9]+)*")
 
 
 @dataclass(frozen=True, slots=True)
@@ -92,6 +95,7 @@ class _Binder:
         self.faults += [fault for fault in faults if fault.place is not None or not self.faults]
         self.faults += kind_faults(laid, self.spec, opened) if opened else []
         self.outside(laid, plan)
+        self.idle(laid, plan)
         if self.spec.sheet.T_dead is not None and "T_0" in (*plan.needs, *self.spec.case.inputs):
             self.fault("the dead state is given twice", ("sheet", "T_dead"), key=True,
                        expected="the input T_0 alone, where the sheet has one")
@@ -230,6 +234,21 @@ class _Binder:
                            ("limits", index, "symbol"), hint=nearest(limit.symbol, known))
             elif limit.symbol in proved:
                 self.limit_bound(laid, index, known)
+
+    def idle(self, laid: LaidPlan, plan: Plan) -> None:
+        """An input that nothing uses is a slip: of spelling, or left over from another option."""
+        if self.faults:
+            # What would have used it may be the very thing at fault.
+            return
+        used = {name for step in laid.steps for name in step.uses} | {one.symbol for one in self.spec.results}
+        used |= {name for limit in self.spec.limits for name in (limit.symbol, limit.bound)}
+        if self.spec.case.series is not None:
+            used |= set(_NAMES.findall(repr(self.spec.case.series)))
+        unread = [need for need in plan.needs if need not in self.spec.case.inputs]
+        for symbol in self.spec.case.inputs:
+            if symbol not in used and symbol not in plan.needs:
+                self.fault(f"nothing on this sheet uses the input {symbol!r}", ("case", "inputs", symbol), key=True,
+                           hint=nearest(symbol, unread) or "delete it, or set the option or step that takes it")
 
     def limit_bound(self, laid: LaidPlan, index: int, known: list[str]) -> None:
         limit = self.spec.limits[index]

@@ -26,12 +26,17 @@ def row_by_row(program: Program, step: LaidStep, before: list[Instruction]) -> C
     """
     program.befores[step.symbol] = before
     slots = [program.slots[name] for name in step.step.columns]
+    given = [given_values(step, index) for index in range(len(step.step.rows))]
+    block = _without(program, before, step.step.given)
 
     def tabulate(values: list[Any]) -> float:
-        rows = []
-        for index in range(len(step.step.rows)):
+        held = program.memory()
+        try:
             # The row that is shown has been solved: the steps before this one are its steps.
-            rows.append(list(values) if index == step.step.shown else solved_row(program, step, index, values))
+            rows = [list(values) if index == step.step.shown else _run_row(program, step, index, values, fixed, block)
+                    for index, fixed in enumerate(given)]
+        finally:
+            program.recall(held)
         program.cases[step.symbol] = rows
         program.tables[step.symbol] = [[row[slot] for slot in slots] for row in rows]
         return float(len(rows))
@@ -47,20 +52,32 @@ def solved_row(program: Program, step: LaidStep, index: int, values: list[Any],
     NoAnswerError
         With the row's label at the head of the message.
     """
-    row = step.step.rows[index]
     fixed = given_values(step, index) | dict(fixed or {})
+    held = program.memory()
+    try:
+        return _run_row(program, step, index, values, fixed, _without(program, program.befores[step.symbol], fixed))
+    finally:
+        program.recall(held)
+
+
+def _without(program: Program, before: list[Instruction], names: Collection[str]) -> list[Instruction]:
+    """The instructions but for those that give ``names`` their values."""
+    kept = {program.slots[name] for name in names}
+    return [pair for pair in before if pair[0] not in kept]
+
+
+def _run_row(program: Program, step: LaidStep, index: int, values: list[Any], fixed: Mapping[str, float],
+             block: list[Instruction]) -> list[Any]:
+    """A copy of ``values`` with those that are ``fixed`` put in and the block run on it."""
     listed = list(values)
     for name, value in fixed.items():
         listed[program.slots[name]] = value
-    kept = {program.slots[name] for name in fixed}
-    held = program.memory()
     try:
-        program.run_block([pair for pair in program.befores[step.symbol] if pair[0] not in kept], listed)
+        program.run_block(block, listed)
         program.require_real(listed)
     except NoAnswerError as error:
-        raise RowError(replace(fault, what=f"row {row.label!r}: {fault.what}") for fault in error.faults) from None
-    finally:
-        program.recall(held)
+        label = step.step.rows[index].label
+        raise RowError(replace(fault, what=f"row {label!r}: {fault.what}") for fault in error.faults) from None
     return listed
 
 

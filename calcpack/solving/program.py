@@ -22,6 +22,9 @@ from calcpack.units import read_quantity
 
 Instruction = tuple[int, Callable[[list[Any]], Any]]
 
+REMEMBERED = 256
+"""Look-ups of one property of one fluid that a run remembers before it starts afresh."""
+
 
 class Program:
     """A plan compiled; ``slots`` says where in the list of values each symbol stands.
@@ -53,6 +56,8 @@ class Program:
         self.functions: dict[str, Callable[[list[Any]], Any]] = {}
         self.bodies: dict[str, tuple[list[Instruction], Compiled]] = {}
         self.compiled_trees: dict[Node, Callable[[list[Any]], Any]] = {}
+        self.readers: dict[tuple[str, str, tuple[str, ...]], Callable[..., float]] = {}
+        self.looked_up: list[dict[tuple[float, ...], float]] = []
         self.spare = len(self.slots)
         self.block = self._block(list(plan.items), 0)[0]
 
@@ -67,6 +72,8 @@ class Program:
         values: list[Any] = [0.0] * (self.spare + 1)
         for name, value in inputs.items():
             values[self.slots[name]] = value
+        for found in self.looked_up:
+            found.clear()
         self.run_block(self.block, values)
         self.require_real(values)
         return {name: values[index] for name, index in self.slots.items()}
@@ -205,7 +212,7 @@ class Program:
     def _compiled(self, tree: Node) -> Callable[[list[Any]], Any]:
         if not isinstance(tree, PropertyCall):
             return compiled(tree, self.slots)
-        reader = self.plan.fluids[tree.fluid].reader(tree.output, tuple(key for key, _ in tree.given))
+        reader = self._reader(tree.fluid, tree.output, tuple(key for key, _ in tree.given))
         given = [compiled(value, self.slots) for _, value in tree.given]
         parts = [value for _, value in tree.given]
         if len(parts) == 2 and all(isinstance(part, Symbol) and part.name not in CONSTANTS for part in parts):
@@ -215,6 +222,18 @@ class Program:
             first, second = given
             return lambda v: reader(first(v), second(v))
         return lambda v: reader(*[part(v) for part in given])
+
+    def _reader(self, role: str, output: str, names: tuple[str, ...]) -> Callable[..., float]:
+        """A fluid's reader; two values that a run has asked for already are not asked for again."""
+        key = role, output, names
+        if key not in self.readers:
+            reader = self.plan.fluids[role].reader(output, names)
+            if len(names) == 2:
+                # States return exactly: at the ends of profiles, and in a root's body where its unknown has no say.
+                self.looked_up.append({})
+                reader = _remembering(reader, self.looked_up[-1])
+            self.readers[key] = reader
+        return self.readers[key]
 
     def _choice(self, step: LaidStep) -> Callable[[list[Any]], Any]:
         branches = step.step.branches
@@ -259,6 +278,18 @@ class Program:
 
 REDUCTIONS: dict[str, Callable[[list[float]], float]] = {
     "min": min, "max": max, "sum": math.fsum, "mean": lambda values: math.fsum(values) / len(values)}
+
+
+def _remembering(reader: Callable[..., float], found: dict[tuple[float, ...], float]) -> Callable[..., float]:
+    """The reader, with what it gave kept in ``found`` by the two values it was asked with."""
+    def read(first: float, second: float) -> float:
+        known = found.get((first, second))
+        if known is None:
+            if len(found) >= REMEMBERED:
+                found.clear()
+            known = found[first, second] = reader(first, second)
+        return known
+    return read
 
 
 def interpolated(points: list[tuple[float, float]], x: float) -> float:

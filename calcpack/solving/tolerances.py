@@ -19,6 +19,8 @@ from calcpack.solving.solution import Solution, read_bound
 from calcpack.units import Unit, read_quantity, shown_with_unit
 from calcpack.units.digits import decimals_for, number_text
 
+NOISE = 1e-8
+
 
 @dataclass(frozen=True, slots=True)
 class Moved:
@@ -33,7 +35,11 @@ class Moved:
         """The changes of a symbol at the low and the high end [SI]; None where an end has no answer."""
         if self.low is None or self.high is None:
             return None
-        return self.low[symbol] - values[symbol], self.high[symbol] - values[symbol]
+        # Below this share a difference is what the width of the roots leaves, not an effect.
+        noise = NOISE * abs(values[symbol])
+        changes = (end[symbol] - values[symbol] for end in (self.low, self.high))
+        low, high = (change if abs(change) > noise else 0.0 for change in changes)
+        return low, high
 
 
 def uncertainty(solution: Solution) -> dict[str, Any] | None:

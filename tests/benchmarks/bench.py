@@ -1,11 +1,11 @@
-"""Ratios that must stay small: solving against a bare script, help, PDF against the layout alone.
+"""Ratios that must stay small: solving against a bare script, a season against its rows, help, PDF against the layout.
 
 Run from the project's root: ``python tests/benchmarks/bench.py``. Each line
-gives a ratio or a time and its target. Not collected by pytest.
+gives a ratio or a time and its target; times are of the processor, best of
+several, so that other work on the machine does not count. Not collected by pytest.
 """
 from __future__ import annotations
 
-import math
 import os
 import resource
 import subprocess
@@ -13,229 +13,110 @@ import sys
 import tempfile
 import time
 from collections.abc import Callable
-from itertools import pairwise
 from pathlib import Path
 from typing import Any
 
+from bare_searches import Engine, HeatPump
+from bare_sheets import CarbonDioxide, Cascade, SteamPlant
+
 REPEATS = 15
-PIECES = 4
+SAME = 1e-6     # relative: what a script must agree to before it is timed
+HEATERS = {"reheats": "2", "heaters": "closed-trap open closed-trap"}
+SHEETS = (("steam-plant", HEATERS, SteamPlant), ("cascade", {}, Cascade), ("transcritical-co2", {}, CarbonDioxide))
+ONE_BIN = "|\n      T_out [degC], t_bin [h]\n      {}, {}"
+LOAD = {"Q_dot_sink": "20 kW - 5 kW/K * (T_out - 16 degC)"}
+STREAMS = LOAD | {"T_source_in": "T_out", "T_source_out": "T_out - 4 K",
+                  "T_sink_out": "35 degC - 0.6 * (T_out - 16 degC)", "T_sink_in": "T_sink_out - 5 K"}
+LEVELS = LOAD | {"T_e": "T_out - 8 K", "T_c": "40 degC - 0.6 * (T_out - 16 degC)"}
+GIVEN = {"evaporating": "temperature", "condensing": "temperature", "source_stream": "none", "sink_stream": "none"}
 
 
-def best(call: Callable[[], Any], repeats: int = REPEATS) -> float:
-    """The shortest of several runs [s]: what the work costs without its disturbances."""
-    times = []
+def in_turns(calls: list[Callable[[], Any]], repeats: int = REPEATS) -> list[float]:
+    """The shortest run [s] of each call, run in turns so that a slower spell falls on all."""
+    times: list[list[float]] = [[] for _ in calls]
     for _ in range(repeats):
-        start = time.perf_counter()
-        call()
-        times.append(time.perf_counter() - start)
-    return min(times)
+        for call, found in zip(calls, times, strict=True):
+            start = time.process_time()
+            call()
+            found.append(time.process_time() - start)
+    return [min(found) for found in times]
 
 
-def solution(method: str) -> Any:
+def solution(method: str, options: dict[str, str] | None = None) -> Any:
     """The starter's case of a method, bound and solved."""
     from calcpack.methods.starter import starter
+    return solution_of(starter(method, options or {}))
+
+
+def solution_of(text: str) -> Any:
+    """The case of a spec's text, bound and solved."""
     from calcpack.solving import solved
     from calcpack.solving.bind import bind
     from calcpack.spec import read_for_faults
-    spec, faults = read_for_faults(Path("bench.yaml"), text=starter(method, {}), name="bench.yaml")
+    spec, faults = read_for_faults(Path("bench.yaml"), text=text, name="bench.yaml")
     return solved(bind(spec, None, faults))
-
-
-class Bare:
-    """The same cases by hand: one library state a fluid, no checks of range, no names, no printing."""
-
-    fluid: str
-
-    def __init__(self, values: dict[str, float]) -> None:
-        import CoolProp
-        from scipy.optimize import brentq
-        self.CP, self.brentq, self.v = CoolProp, brentq, values
-        self.wf, self.water, self.air = (CoolProp.AbstractState("HEOS", name) for name in (self.fluid, "Water", "Air"))
-
-    def root(self, residual: Callable[[float], float], low: float, high: float) -> float:
-        """The root to 1e-11 of the bracket; once more at the root where the search did not end there."""
-        last = math.nan
-
-        def tried(x: float) -> float:
-            nonlocal last
-            last = x
-            return residual(x)
-        found = self.brentq(tried, low, high, xtol=1e-11 * max(abs(low), abs(high)), rtol=1e-13)
-        if last != found:
-            residual(found)
-        return found
-
-    def smallest(self, fluid: Any, p: float, ends: list[float], stream: Any, p_stream: float, h_cold: float,
-                 ratio: float, sign: float) -> float:
-        """The smallest difference along an exchanger, each zone in equal steps of enthalpy."""
-        inputs = self.CP.HmassP_INPUTS
-        gaps = []
-        for at, (low, high) in enumerate(pairwise(ends)):
-            for piece in range(0 if at == 0 else 1, PIECES + 1):
-                h = low + piece / PIECES * (high - low)
-                fluid.update(inputs, h, p)
-                T = fluid.T()
-                gaps.append(sign * (stream(h_cold + (h - ends[0]) * ratio, p_stream) - T))
-        return min(gaps)
-
-
-class HeatPump(Bare):
-    """The vapour-compression starter: nested roots on the evaporating and condensing temperature."""
-
-    fluid = "R1234ze(E)"
-
-    def solve(self) -> float:
-        CP, v = self.CP, self.v
-        water = self.water
-
-        def water_T(h: float, p: float) -> float:
-            water.update(CP.HmassP_INPUTS, h, p)
-            return water.T()
-        self.water_T = water_T
-
-        def end(T: str, p: str) -> tuple[float, float]:
-            water.update(CP.PT_INPUTS, v[p], v[T])
-            return water.hmass(), water.smass()
-        self.source_in, self.source_out = end("T_source_in", "p_source"), end("T_source_out", "p_source")
-        self.sink_in, self.sink_out = end("T_sink_in", "p_sink"), end("T_sink_out", "p_sink")
-        T_crit = self.wf.T_critical()
-        self.root(lambda T: self.evaporator(T, T_crit), v["T_source_in"] - 90.0, min(v["T_source_in"], T_crit - 5.0))
-        return self.v_cop
-
-    def evaporator(self, T_e: float, T_crit: float) -> float:
-        CP, wf, v = self.CP, self.wf, self.v
-        self.T_e = T_e
-        self.root(self.condenser, v["T_sink_in"], T_crit - 2.0)
-        wf.update(CP.PQ_INPUTS, self.p_e, 1.0)
-        h_g = wf.hmass()
-        m_source = self.m * (self.h_1 - self.h_4) / (self.source_in[0] - self.source_out[0])
-        return self.smallest(wf, self.p_e, [self.h_4, h_g, self.h_1], self.water_T, v["p_source"],
-                             self.source_out[0], self.m / m_source, 1.0) - v["dT_pinch_e"]
-
-    def condenser(self, T_c: float) -> float:
-        CP, wf, v = self.CP, self.wf, self.v
-        wf.update(CP.QT_INPUTS, 1.0, self.T_e)
-        p_e = self.p_e = wf.p()
-        wf.update(CP.QT_INPUTS, 1.0, T_c)
-        p_c = wf.p()
-        wf.update(CP.PT_INPUTS, p_e, self.T_e + v["dT_sh"])
-        h_1, s_1 = wf.hmass(), wf.smass()
-        wf.update(CP.HmassP_INPUTS, h_1, p_e)
-        wf.rhomass()
-        wf.update(CP.PSmass_INPUTS, p_c, s_1)
-        work = (wf.hmass() - h_1) / v["eta_is"]
-        h_2 = h_1 + (1 - v["f_loss"]) * work
-        wf.update(CP.HmassP_INPUTS, h_2, p_c)
-        wf.T(), wf.smass()
-        wf.update(CP.PQ_INPUTS, p_c, 0.0)
-        h_f, T_bub = wf.hmass(), wf.T()
-        wf.update(CP.PT_INPUTS, p_c, T_bub - v["dT_sc"])
-        h_3 = wf.hmass()
-        wf.smass()
-        wf.update(CP.HmassP_INPUTS, h_3, p_e)
-        wf.T(), wf.smass()
-        wf.update(CP.PQ_INPUTS, p_c, 1.0)
-        h_g = wf.hmass()
-        self.m, self.h_1, self.h_4 = v["Q_dot_sink"] / (h_2 - h_3), h_1, h_3
-        m_sink = v["Q_dot_sink"] / (self.sink_out[0] - self.sink_in[0])
-        self.v_cop = v["Q_dot_sink"] / (self.m * work / (v["eta_drive"] * v["eta_motor"]) + v["W_dot_aux"])
-        return self.smallest(wf, p_c, [h_3, h_f, h_g, h_2], self.water_T, v["p_sink"], self.sink_in[0],
-                             self.m / m_sink, -1.0) - v["dT_pinch_c"]
-
-
-class Engine(Bare):
-    """The organic-Rankine starter: a root on the condensing temperature, within it one on the flow."""
-
-    fluid = "CycloPentane"
-
-    def solve(self) -> float:
-        CP, v = self.CP, self.v
-        water = self.water
-
-        def water_T(h: float, p: float) -> float:
-            water.update(CP.HmassP_INPUTS, h, p)
-            return water.T()
-        self.water_T, self.last_T = water_T, 400.0
-        self.scale = 8.31446261815324 / self.air.gas_constant()
-
-        def end(T: str) -> float:
-            water.update(CP.PT_INPUTS, v["p_sink"], v[T])
-            return water.hmass()
-        self.sink_in, self.sink_out = end("T_sink_in"), end("T_sink_out")
-        self.h_source_in = self.air_h(v["T_source_in"])
-        self.root(self.condenser, v["T_sink_in"], self.wf.T_critical() - 20.0)
-        return self.net
-
-    def air_h(self, T: float) -> float:
-        """Enthalpy of thin air: the ideal gas, with the gas constant of today."""
-        self.air.update(self.CP.DmolarT_INPUTS, 1e-9, T)
-        return self.air.hmass() * self.scale
-
-    def air_T(self, h: float, _: float) -> float:
-        """The temperature of thin air of that enthalpy, by Newton's steps on its heat capacity."""
-        T = self.last_T
-        for _ in range(20):
-            step = (h - self.air_h(T)) / (self.air.cpmass() * self.scale)
-            T += step
-            if abs(step) < 1e-9:
-                break
-        self.last_T = T
-        return T
-
-    def condenser(self, T_c: float) -> float:
-        CP, wf, v = self.CP, self.wf, self.v
-        wf.update(CP.QT_INPUTS, 1.0, v["T_e"])
-        p_e = self.p_e = wf.p()
-        wf.update(CP.QT_INPUTS, 1.0, T_c)
-        p_c = wf.p()
-        wf.update(CP.PQ_INPUTS, p_c, 0.0)
-        h_1, s_1 = wf.hmass(), wf.smass()
-        wf.update(CP.PSmass_INPUTS, p_e, s_1)
-        w_p = (wf.hmass() - h_1) / v["eta_p"]
-        self.h_2 = h_1 + w_p
-        wf.update(CP.HmassP_INPUTS, self.h_2, p_e)
-        T_2 = wf.T()
-        wf.smass()
-        wf.update(CP.PQ_INPUTS, p_e, 1.0)
-        self.h_3, s_3 = wf.hmass(), wf.smass()
-        wf.update(CP.PSmass_INPUTS, p_c, s_3)
-        w_t = (self.h_3 - wf.hmass()) * v["eta_t"]
-        h_4 = self.h_3 - w_t
-        wf.update(CP.HmassP_INPUTS, h_4, p_c)
-        wf.T(), wf.smass()
-        wf.update(CP.PQ_INPUTS, p_c, 1.0)
-        h_g = wf.hmass()
-        wf.update(CP.PQ_INPUTS, p_e, 0.0)
-        self.h_f = wf.hmass()
-        most = v["m_dot_source"] * (self.h_source_in - self.air_h(T_2)) / (self.h_3 - self.h_2)
-        m = self.root(self.heater, 0.01 * most, most)
-        h_cv = min(h_4, h_g)
-        wf.update(CP.HmassP_INPUTS, h_cv, p_c)
-        m_sink = m * (h_4 - h_1) / (self.sink_out - self.sink_in)
-        self.net = m * (w_t * v["eta_gen"] - w_p / v["eta_pm"]) - v["W_dot_aux"]
-        return self.smallest(wf, p_c, [h_1, h_cv, h_4], self.water_T, v["p_sink"], self.sink_in, m / m_sink,
-                             -1.0) - v["dT_pinch_c"]
-
-    def heater(self, m: float) -> float:
-        v = self.v
-        h_out = self.h_source_in - m * (self.h_3 - self.h_2) / v["m_dot_source"]
-        T_out = self.air_T(h_out, 0.0)
-        gap = self.smallest(self.wf, self.p_e, [self.h_2, self.h_f, self.h_3], self.air_T, 0.0, h_out,
-                            m / v["m_dot_source"], 1.0)
-        return min(gap - v["dT_pinch_h"], T_out - v["T_source_min"])
 
 
 def solving() -> None:
     """Ratio of a program's run to the bare script of the same case; both must give the same result."""
     for method, bare, symbol in (("vapour-compression", HeatPump, "COP"), ("organic-rankine", Engine, "W_dot_net")):
         case = solution(method)
-        inputs = {name: case.values[name] for name in case.plan.inputs}
-        script = bare(inputs)
-        by_hand, by_program = script.solve(), case.program.run(inputs)[symbol]
-        if abs(by_hand - by_program) > 1e-6 * abs(by_program):
-            sys.exit(f"{method}: the script gives {symbol} = {by_hand:.9g}, the program {by_program:.9g}")
-        ours, theirs = best(lambda case=case, inputs=inputs: case.program.run(inputs)), best(script.solve)
-        report(f"{method}: program {1e3 * ours:.1f} ms, bare script {1e3 * theirs:.1f} ms", ours / theirs, 1.5)
+        script = bare(inputs_of(case))
+        against(method, case, lambda script=script, symbol=symbol: {symbol: script.solve()})
+    for method, options, sheet in SHEETS:
+        case = solution(method, options)
+        against(" ".join((method, *options.values())), case, sheet(inputs_of(case)).solve)
+
+
+def inputs_of(case: Any) -> dict[str, float]:
+    """The inputs of a case [SI]."""
+    return {name: case.values[name] for name in case.plan.inputs}
+
+
+def against(what: str, case: Any, by_hand: Callable[[], dict[str, float]]) -> None:
+    """The ratio of the program's run to the script's, once they agree."""
+    inputs = inputs_of(case)
+    require_same(what, by_hand(), case.program.run(inputs))
+    ours, theirs = in_turns([lambda: case.program.run(inputs), by_hand])
+    report(f"{what}: program {1e3 * ours:.2f} ms, bare script {1e3 * theirs:.2f} ms", ours / theirs, 1.5)
+
+
+def require_same(what: str, expected: dict[str, float], found: dict[str, float]) -> None:
+    """Stop where a value is not that of the other way."""
+    for symbol, value in expected.items():
+        if not abs(value - found[symbol]) <= SAME * abs(value):
+            sys.exit(f"{what}: by hand {symbol} = {value:.9g}, by the program {found[symbol]:.9g}")
+
+
+def season(what: str, options: dict[str, str], by_row: dict[str, str]) -> None:
+    """Ratio of a season's 26 bins on one sheet to the same sheet with one bin, solved for each of the 26."""
+    from calcpack.plan.seasons import SEASONS
+    whole = solution_of(seasonal(options, by_row, "average", 2))
+    singles = [solution_of(seasonal(options, by_row, ONE_BIN.format(*one), one[0])) for one in SEASONS["average"].bins]
+    slots, rows = whole.program.slots, whole.program.cases["n_rows"]
+    for single, row in zip(singles, rows, strict=True):
+        require_same(f"{single.values['T_out']} K", {name: single.values[name] for name in ("T_out", "COP", "T_2")},
+                     {name: row[slot] for name, slot in slots.items()})
+    inputs = inputs_of(whole)
+
+    def each() -> None:
+        for single in singles:
+            single.program.run(inputs)
+    ours, theirs = in_turns([lambda: whole.program.run(inputs), each])
+    report(f"a season of {len(rows)} bins, {what}: {1e3 * ours:.2f} ms, "
+           f"{len(singles)} solves of one bin {1e3 * theirs:.2f} ms", ours / theirs, 1.0)
+
+
+def seasonal(options: dict[str, str], by_row: dict[str, str], rows: str, shown: int) -> str:
+    """The heat pump's starter with air as its source and inputs that follow from the outdoor temperature."""
+    from calcpack.methods.starter import starter
+    text = starter("vapour-compression", options).replace("wf: R-1234ze(E)", "wf: R-290").replace(
+        "source: water", "source: air")
+    given = "".join(line for line in text.splitlines(keepends=True)
+                    if not line.strip().startswith(tuple(f"{name}:" for name in by_row)))
+    formulas = "".join(f"      {name}: {formula}\n" for name, formula in by_row.items())
+    series = f"  series:\n    rows: {rows}\n    shown: {shown} degC\n    inputs:\n{formulas}"
+    return given.replace("  inputs:\n", series + "  inputs:\n", 1)
 
 
 def help_time() -> None:
@@ -272,16 +153,18 @@ def pdf_time() -> None:
         write_pdf(sheet_html(record, figures=figures, for_print=True), path, record)
     with tempfile.TemporaryDirectory() as folder:
         path = Path(folder) / "bench.pdf"
-        alone = best(lambda: HTML(string=html, base_url=base).write_pdf(pdf_tags=True), 3)
-        report(f"PDF, {alone:.1f} s by the layout alone", best(ours, 3) / alone, 1.15)
+        whole, alone = in_turns([ours, lambda: HTML(string=html, base_url=base).write_pdf(pdf_tags=True)], 3)
+        report(f"PDF, {alone:.1f} s by the layout alone", whole / alone, 1.15)
 
 
 def report(what: str, found: float, target: float) -> None:
-    """A line: what, the figure, its target, and whether it is kept."""
-    print(f"{what}: {found:.2f}, target {target:g}: {'kept' if found <= target else 'MISSED'}")
+    """A line: what, the figure to two decimals, its target, and whether it is kept."""
+    print(f"{what}: {found:.2f}, target {target:g}: {'kept' if round(found, 2) <= target else 'MISSED'}")
 
 
 if __name__ == "__main__":
     solving()
+    season("pinches", {}, STREAMS)
+    season("levels given", GIVEN, LEVELS)
     help_time()
     pdf_time()

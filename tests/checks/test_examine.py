@@ -28,9 +28,9 @@ def test_entries_are_json_with_unique_names_and_known_words(heat_pump: Solved, e
 
 def test_groups_stand_together_in_the_order_of_the_checks(heat_pump: Solved) -> None:
     groups = [entry["group"] for entry in examine(*heat_pump).checks]
-    assert list(dict.fromkeys(groups)) == ["Mass balance", "Energy balance", "Entropy generated", "Bound", "Pinch", "Exergy",
-                                           "Property range", "Critical point", "Second source", "Second way",
-                                           "Re-done from print"]
+    assert list(dict.fromkeys(groups)) == [
+        "Mass balance", "Energy balance", "Entropy generated", "Bound", "Pinch", "Exergy", "Property range",
+        "Critical point", "Second source", "Second way", "Re-done from print"]
     assert groups == sorted(groups, key=list(dict.fromkeys(groups)).index)
     assert len(CHECKS) == 14
 

@@ -85,7 +85,7 @@ def test_heat_of_unstated_temperature_is_not_guessed() -> None:
 
 
 def test_the_dead_state_is_the_sheets_own_before_the_specs_before_the_usual(engine: Solved, heat_pump: Solved) -> None:
-    assert dead_state(engine[0]).T == engine[0].value("T_0")
+    assert engine[0].value("T_0") == dead_state(engine[0]).T
     assert dead_state(engine[0]).source == "T_0 of this sheet"
     usual = dead_state(heat_pump[0])
     assert (usual.T, usual.p, usual.source) == (pytest.approx(288.15), heat_pump[0].p_atm, "default")

@@ -106,3 +106,14 @@ def test_numbers_of_every_form() -> None:
     FluidDefinition("exhaust", composition=(("N2", 0.71), ("CO2", 0.1234567890123), ("H2O", 0.16)), basis="mass")])
 def test_a_fluid_is_stated_in_full(definition: FluidDefinition) -> None:
     assert definition_from(definition.words) == definition
+
+
+def test_a_zero_that_is_not_the_fluids_own_is_refused() -> None:
+    from calcpack.review.printed_fluids import open_printed
+    from calcpack.review.printed_page import PrintedFluid
+    own = "the equation's own zero of h and s, as in the property library"
+    said = f"{own}; saturated liquid at 0.01 °C: h = 0.00 kJ/kg, s = 0.0000 kJ/(kg·K)"
+    assert open_printed(PrintedFluid("F1", "water", {"As stated": "water", "Reference state": said}))
+    for wrong in (said.replace("h = 0.00", "h = 1.00"), said.replace("s = 0.0000", "s = 0.1000"), "another zero"):
+        with pytest.raises(UnreadableError):
+            open_printed(PrintedFluid("F1", "water", {"As stated": "water", "Reference state": wrong}))
