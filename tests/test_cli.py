@@ -139,7 +139,7 @@ def test_status_2_where_the_command_is_wrong(cli, arguments):
 def test_a_set_without_symbol_or_value_is_told(cli, spec, pair):
     result = cli("solve", spec("a.yaml"), "--set", pair)
     assert result.exit_code == 2
-    assert result.stderr == (f"error: --set {pair}: a symbol and a value are meant\n    expected: --set T_e='2 degC'\n"
+    assert result.stderr == (f"error: --set {pair}: a name and a value are meant\n    expected: --set T_e='2 degC'\n"
                              "1 error, nothing was written.\n")
 
 
@@ -227,7 +227,7 @@ def test_hostile_specs_leave_no_traceback(cli, tmp_path):
     start = time.monotonic()
     base = ("calcpack: 1\n"
             "sheet: {number: T-1, title: T, project: P, revision: A, status: draft, purpose: P, scope: S}\n"
-            "case:\n  method: none\n  inputs: {x: 5}\nsteps:\n  - {symbol: y, title: Y, formula: '%s'}\n")
+            "case:\n  method: none\n  inputs: {x: 5}\nsteps:\n  - {symbol: y, title: Y, formula: '%s'}\nresults: [x]\n")
     formulas = ["9^9^9^9", "9**9**9**9", "((9^12)^12)^12", "x.__class__", "eval(x)", "+".join(["x"] * 299), "(" * 500,
         "1/0",
                 "ln(-x)", "(-x)^0.5", "exp(1000*x)", "h(wf, p=x)", "x" * 599, "1e308*10*x", "y", "x - x", "1/(x - 5)",

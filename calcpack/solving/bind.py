@@ -26,6 +26,9 @@ from calcpack.units import Reading, kind_of_unit, print_unit, read_quantity
 if TYPE_CHECKING:
     from calcpack.spec import Spec
 
+READ_BY_CAUTIONS = frozenset({"p_SO3", "p_H2O"})
+"""Inputs of the engineer's own that no step needs to read, since cautions do."""
+
 _NAMES = re.compile(r"[A-Za-z][A-Za-z0-9]*(?:_[A-Za-z0-9]+)*")
 
 
@@ -50,7 +53,7 @@ def bind(spec: Spec, overrides: Mapping[str, str] | None = None,
     SpecError
         With every fault, the earlier ones first, in the order of the file.
     """
-    binder = _Binder(spec, dict(overrides or {}))
+    binder = _Binder(spec, dict(overrides or {}), bool(earlier))
     bound = binder.bind()
     faults = [*earlier, *binder.faults]
     if faults or bound is None:
@@ -60,8 +63,9 @@ def bind(spec: Spec, overrides: Mapping[str, str] | None = None,
 
 
 class _Binder:
-    def __init__(self, spec: Spec, overrides: dict[str, str]) -> None:
+    def __init__(self, spec: Spec, overrides: dict[str, str], faulty: bool = False) -> None:
         self.spec = spec
+        self.faulty = faulty
         self.overrides = overrides
         self.faults: list[Fault] = []
         self.readings: dict[str, Reading] = {}
@@ -237,11 +241,11 @@ class _Binder:
 
     def idle(self, laid: LaidPlan, plan: Plan) -> None:
         """An input that nothing uses is a slip: of spelling, or left over from another option."""
-        if self.faults:
+        if self.faults or self.faulty:
             # What would have used it may be the very thing at fault.
             return
         used = {name for step in laid.steps for name in step.uses} | {one.symbol for one in self.spec.results}
-        used |= {name for limit in self.spec.limits for name in (limit.symbol, limit.bound)}
+        used |= READ_BY_CAUTIONS | {name for limit in self.spec.limits for name in (limit.symbol, limit.bound)}
         if self.spec.case.series is not None:
             used |= set(_NAMES.findall(repr(self.spec.case.series)))
         unread = [need for need in plan.needs if need not in self.spec.case.inputs]

@@ -10,15 +10,16 @@ from collections.abc import Callable, Mapping
 from dataclasses import replace
 from typing import Any
 
-from calcpack.errors import Fault, NoAnswerError
+from calcpack.errors import Fault, NoAnswerError, RootError
 from calcpack.formula.evaluate import Compiled, compiled
 from calcpack.formula.text import to_text
 from calcpack.formula.tree import CONSTANTS, Node, PropertyCall, Symbol, symbols_of
-from calcpack.plan.laid import LaidDemand, LaidPlan, LaidStep
+from calcpack.plan.laid import LaidDemand, LaidPlan, LaidStep, is_level
 from calcpack.plan.steps import CasesStep, Closing, LookupStep, OptimumStep, RootStep, SeriesStep, TotalStep
 from calcpack.solving.cases import RowError, row_by_row
 from calcpack.solving.roots import Optimum, Root, find_optimum, find_root
-from calcpack.units import read_quantity
+from calcpack.units import read_quantity, shown_with_unit, unit
+from calcpack.units.digits import decimals_for, number_text
 
 Instruction = tuple[int, Callable[[list[Any]], Any]]
 
@@ -58,6 +59,8 @@ class Program:
         self.compiled_trees: dict[Node, Callable[[list[Any]], Any]] = {}
         self.readers: dict[tuple[str, str, tuple[str, ...]], Callable[..., float]] = {}
         self.looked_up: list[dict[tuple[float, ...], float]] = []
+        self.print_units = {one.symbol: (one.unit, is_level(one.measure))
+                            for one in (*plan.inputs.values(), *plan.steps)}
         self.spare = len(self.slots)
         self.block = self._block(list(plan.items), 0)[0]
 
@@ -159,10 +162,30 @@ class Program:
 
     def _found(self, step: LaidStep, at: Callable[[float], float], low: float, high: float) -> float:
         if isinstance(step.step, RootStep):
-            self.roots[step.symbol] = root = find_root(at, low, high)
+            try:
+                self.roots[step.symbol] = root = find_root(at, low, high)
+            except RootError as error:
+                raise self._bracketed(error, step, low, high) from None
             return root.value
         self.optima[step.symbol] = optimum = find_optimum(at, low, high, greatest=step.step.sense == "greatest")
         return optimum.value
+
+    def _bracketed(self, error: RootError, step: LaidStep, low: float, high: float) -> RootError:
+        """The same error with the bracket in the engineer's units and formulas, where it gives no hint of its own."""
+        ends = (f"{to_text(step.trees[name])} = {self._told(step.symbol, value)}"
+                for name, value in (("low", low), ("high", high)))
+        bracket = "the bracket runs from {} to {}".format(*ends)
+        return RootError(replace(fault, hint=fault.hint or bracket) for fault in error.faults)
+
+    def _told(self, name: str, value: float) -> str:
+        """A value for a message, in the unit it is printed in; a temperature level with its everyday twin."""
+        shown_in, level = self.print_units[name]
+        number = shown_in.from_si(value)
+        text = shown_with_unit(number_text(number, max(0, decimals_for(number, 6))), shown_in)
+        if not level:
+            return text
+        everyday = unit("°C" if shown_in.symbol == "K" else "°F")
+        return f"{text} ({shown_with_unit(number_text(everyday.from_si(value), 2), everyday)})"
 
     def residual_at(self, symbol: str, trial: float, values: Mapping[str, float]) -> float:
         """A root's equation, or an optimum's objective, with ``trial`` for the unknown and its body run again [SI].
@@ -197,8 +220,8 @@ class Program:
 
         def require(values: list[Any]) -> float:
             if not holds(values):
-                found = ", ".join(f"{name} = {values[self.slots[name]]:.6g}" for name in names)
-                raise _UnmetError(Fault(demand.text, found=f"{found} (SI)", hint=demand.hint,
+                found = ", ".join(f"{name} = {self._told(name, values[self.slots[name]])}" for name in names)
+                raise _UnmetError(Fault(demand.text, found=found, hint=demand.hint,
                                         expected=to_text(demand.condition)))
             return 0.0
         return require

@@ -140,3 +140,11 @@ def test_templates_are_found_in_the_source_tree_and_in_a_wheel(tmp_path: Path, m
     (inside / "templates" / "sheet.html").unlink()
     with pytest.raises(assets.MissingPartError):
         templates_folder()
+
+
+def test_a_folder_with_files_of_somebody_else_is_left_alone(small: Record, tmp_path: Path) -> None:
+    (tmp_path / "index.html").write_text("mine", "utf-8")
+    with pytest.raises(CommandError, match="did not write"):
+        build_site([(small, None)], tmp_path, pdf=False)
+    assert (tmp_path / "index.html").read_text("utf-8") == "mine"
+    assert [one.name for one in tmp_path.iterdir()] == ["index.html"]

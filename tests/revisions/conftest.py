@@ -49,6 +49,7 @@ steps:
     unit: K
     title: Mean difference that carries the heat
     root: {equation: "area_f * dT_m * 1500 W/(m2·K) - Q_dot", between: [1 K, 80 K]}
+  - {symbol: kept, title: Kept in reserve, formula: spare * 2}
 limits:
   - {id: L1, symbol: area_f, at_most: 12 m2, why: room on the frame}
   - {id: L2, symbol: T_out, at_most: 40 degC, why: the drain}

@@ -180,8 +180,14 @@ def test_an_own_step_may_not_take_a_symbol_of_the_method(solution_of):
 @pytest.mark.parametrize("symbol, text, level", [("T_x", "300 K", True), ("dT_x", "3 K", False), ("T_x", "20 degC",
     True)])
 def test_an_own_input_in_kelvin_is_a_level_unless_its_symbol_says_difference(solution_of, symbol, text, level):
-    solution = solution_of(BASE.replace("    T_e:", f"    {symbol}: {text}\n    T_e:"))
+    solution = solution_of(BASE.replace("    T_e:", f"    {symbol}: {text}\n    T_e:") + f"results: [{symbol}]\n")
     assert solution.level(symbol) is level
+
+
+def test_an_input_that_nothing_uses_is_a_slip(solution_of):
+    fault, = faults_of(solution_of, BASE.replace("    T_e:", "    W_dot_axu: 2 kW\n    T_e:"))
+    assert fault.what == "nothing on this sheet uses the input 'W_dot_axu'"
+    assert fault.hint == "did you mean 'W_dot_aux'?"
 
 
 def test_a_fault_is_shown_with_its_line_and_caret(solution_of):

@@ -128,7 +128,7 @@ def test_temperature_levels_are_printed_absolute_with_their_everyday_twin(arrang
 
 
 HARD = """\
-  inputs: {a: 1000001 m, b: 1000000 m, tiny: 3e-7 kg, huge: 4.2e11 W, x: 0.999999, V_dot: 0.2 m3/h, n: 2900 1/min}
+  inputs: {a: 1000001 m, b: 1000000 m, tiny: 3e-7 kg, huge: 4.2e11 W, x: 0.999999, n: 2900 1/min}
 steps:
   - {symbol: d, title: Small difference of great values, formula: (a - b) / b}
   - {symbol: s, title: Steep, formula: 1 / (1 - x)}

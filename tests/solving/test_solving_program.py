@@ -131,7 +131,7 @@ def test_a_demand_that_does_not_hold_stops_the_solution_with_its_own_words(run):
     assert run(plan, {"x": "3"})[1]["y"] == 6.0
     fault = fault_of(run, plan, {"x": "2"})
     assert (fault.what, fault.hint, fault.found, fault.expected) == (
-        "the doubled value is too small", "take a greater x", "y = 4, x = 2 (SI)", "y > 5 and x < 100")
+        "the doubled value is too small", "take a greater x", "y = 4.00000, x = 2.00000", "y > 5 and x < 100")
 
 
 @pytest.mark.parametrize("formula, x, what", [
