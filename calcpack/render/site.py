@@ -29,6 +29,8 @@ from calcpack.review.from_print import require, require_same
 from calcpack.verification.statement import statement
 
 MANIFEST = ".calcpack-site.json"
+HALF_MM, WIDE_MM = 80.0, 165.0
+CROWDED = 10
 Data = Mapping[str, Any]
 Item = tuple[Record, Data | None]
 Progress = Callable[[str], None]
@@ -173,7 +175,9 @@ def _fluid_pages(items: Sequence[Item], stems: Sequence[str], aside: Path) -> li
 def draw(record: Record) -> tuple[Any, ...]:
     """The figures of a record."""
     from calcpack.figures import figures
-    return tuple(figures(record.data))
+    # Many numbered states need the whole width of the page to keep apart.
+    crowded = any(len(one["points"]) > CROWDED for one in record.data["diagrams"])
+    return tuple(figures(record.data, WIDE_MM if crowded else HALF_MM))
 
 
 @contextmanager
