@@ -128,17 +128,7 @@ def _high_circuit(plan: Plan, section: Section) -> None:
 
 
 def _duty(plan: Plan, section: Section) -> None:
-    match plan.options["size_by"]:
-        case "sink-duty":
-            section.formula("m_dot_high", "Q_dot_sink / (h_6 - h_7)", "Mass flow of the high circuit", "kg/s")
-            section.formula("m_dot_low", "m_dot_high / r_m", "Mass flow of the low circuit", "kg/s")
-        case "source-duty":
-            section.formula("m_dot_low", "Q_dot_source / (h_1 - h_4)", "Mass flow of the low circuit", "kg/s")
-    if plan.options["size_by"] != "sink-duty":
-        section.formula("m_dot_high", "r_m * m_dot_low", "Mass flow of the high circuit", "kg/s")
-        section.formula("Q_dot_sink", "m_dot_high * (h_6 - h_7)", "Heat given to the sink", "kW")
-    if plan.options["size_by"] != "source-duty":
-        section.formula("Q_dot_source", "m_dot_low * (h_1 - h_4)", "Heat taken from the source", "kW")
+    parts.duties(plan, section, "circuit", sink="h_6 - h_7", source="h_1 - h_4")
     section.formula("Q_dot_cas", "m_dot_low * (h_2 - h_3)", "Heat exchanged in the cascade exchanger", "kW")
 
 

@@ -142,17 +142,7 @@ def _between(plan: Plan, section: Section) -> None:
 
 
 def _duty(plan: Plan, section: Section) -> None:
-    match plan.options["size_by"]:
-        case "sink-duty":
-            section.formula("m_dot_high", "Q_dot_sink / (h_4 - h_5)", "Mass flow of the high stage", "kg/s")
-            section.formula("m_dot_low", "m_dot_high / r_m", "Mass flow of the low stage", "kg/s")
-        case "source-duty":
-            section.formula("m_dot_low", "Q_dot_source / (h_1 - h_8)", "Mass flow of the low stage", "kg/s")
-    if plan.options["size_by"] != "sink-duty":
-        section.formula("m_dot_high", "r_m * m_dot_low", "Mass flow of the high stage", "kg/s")
-        section.formula("Q_dot_sink", "m_dot_high * (h_4 - h_5)", "Heat given to the sink", "kW")
-    if plan.options["size_by"] != "source-duty":
-        section.formula("Q_dot_source", "m_dot_low * (h_1 - h_8)", "Heat taken from the source", "kW")
+    parts.duties(plan, section, "stage", sink="h_4 - h_5", source="h_1 - h_8")
     if plan.options["arrangement"] != "flash-chamber":
         section.formula("m_dot_9", "m_dot_high - m_dot_low", "Mass flow of the vapour between the stages",
                         "kg/s")

@@ -270,6 +270,25 @@ def source_volume(name: str, into: Flow, out: Flow, it: Stream | None, duty: str
     return Volume(name, (into, it.flow_in), (out, it.flow_out), scale=duty)
 
 
+def duties(plan: Plan, section: Section, word: str, sink: str, source: str) -> None:
+    """Flows of two circuits or stages, named by ``word``, and the heats, from what sets the size.
+
+    ``sink`` and ``source`` are the enthalpy falls, a kilogram of the high and of
+    the low flow; ``r_m`` is the high flow over the low one.
+    """
+    match plan.options["size_by"]:
+        case "sink-duty":
+            section.formula("m_dot_high", f"Q_dot_sink / ({sink})", f"Mass flow of the high {word}", "kg/s")
+            section.formula("m_dot_low", "m_dot_high / r_m", f"Mass flow of the low {word}", "kg/s")
+        case "source-duty":
+            section.formula("m_dot_low", f"Q_dot_source / ({source})", f"Mass flow of the low {word}", "kg/s")
+    if plan.options["size_by"] != "sink-duty":
+        section.formula("m_dot_high", "r_m * m_dot_low", f"Mass flow of the high {word}", "kg/s")
+        section.formula("Q_dot_sink", f"m_dot_high * ({sink})", "Heat given to the sink", "kW")
+    if plan.options["size_by"] != "source-duty":
+        section.formula("Q_dot_source", f"m_dot_low * ({source})", "Heat taken from the source", "kW")
+
+
 def stream_links(name: str, it: Stream | None, box: str) -> list[Link]:
     """The sketch's lines of a stream through ``box``; ``name`` is the stream's as the stream table has it."""
     if it is None:
