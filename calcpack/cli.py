@@ -7,46 +7,15 @@ the machine is missing.
 """
 from __future__ import annotations
 
-import sys
-from collections.abc import Callable, Sequence
-from functools import wraps
+from collections.abc import Sequence
 from pathlib import Path
 from typing import Any
 
 import click
 
 from calcpack import __version__
-from calcpack.errors import CalcpackError, CommandError, Fault, describe
-
-CONTEXT = {"help_option_names": ["-h", "--help"], "max_content_width": 100}
-
-
-def reported(command: Callable[..., int]) -> Callable[..., None]:
-    """Print faults as a compiler does and leave with their status; else with the command's."""
-    @wraps(command)
-    def run(*arguments: Any, **options: Any) -> None:
-        try:
-            status = command(*arguments, **options)
-        except CalcpackError as error:
-            click.echo(describe(error.faults, _texts(error.faults)), err=True)
-            status = error.exit_status
-        except BrokenPipeError:
-            # The reader of our output has gone, as 'head' does; nothing is wrong.
-            sys.stderr.close()
-            status = 0
-        sys.exit(status)
-    return run
-
-
-def _texts(faults: Sequence[Fault]) -> dict[str, str]:
-    """The texts of the files that faults point into, where they can be read."""
-    texts = {}
-    for name in {fault.place.file for fault in faults if fault.place}:
-        try:
-            texts[name] = Path(name).read_text("utf-8", errors="replace")
-        except OSError:
-            continue
-    return texts
+from calcpack.commands.reporting import CONTEXT, reported
+from calcpack.errors import CommandError, Fault
 
 
 def _overrides(pairs: Sequence[str], option: str = "--set", example: str = "--set T_e='2 degC'") -> dict[str, str]:

@@ -93,6 +93,7 @@ def build_package(sources: Sequence[Path], folder: Path, *, pdf: bool, jobs: int
     CalcpackError
         Before anything is written, with the faults of all specs.
     """
+    from calcpack.render.pages import Extras
     from calcpack.render.site import build_site
     paths = spec_files(sources)
     jobs = jobs or min(len(paths), os.cpu_count() or 1)
@@ -103,8 +104,8 @@ def build_package(sources: Sequence[Path], folder: Path, *, pdf: bool, jobs: int
     solved = [pair for pair, _ in found]
     _require_distinct(solved)
     tell("writing pages" + (" and PDFs" if pdf else ""))
-    verifications = {record.number: run for (record, _), run in found if run is not None}
-    site = build_site(solved, folder, pdf=pdf, jobs=jobs, progress=tell, verifications=verifications)
+    extras = {record.number: Extras(verification=run) for (record, _), run in found}
+    site = build_site(solved, folder, pdf=pdf, jobs=jobs, progress=tell, extras=extras)
     return Package(tuple(record for record, _ in solved), site.files, site.unmet)
 
 

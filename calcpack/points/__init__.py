@@ -13,7 +13,8 @@ from typing import Any
 from calcpack.points import judged_basis, judged_formal, judged_working
 from calcpack.points.catalogue import CATALOGUE
 from calcpack.points.point import PERSON, UNMET, Point, View
-from calcpack.review.from_print import Redone
+from calcpack.render.pages import Extras
+from calcpack.reread.from_print import Redone
 
 __all__ = ["Point", "View", "points", "unmet"]
 
@@ -22,13 +23,13 @@ JUDGES = judged_basis.JUDGES | judged_working.JUDGES | judged_formal.JUDGES
 
 
 def points(record: Mapping[str, Any], html: str, redone: Redone, comparison: Mapping[str, Any] | None,
-           verified: Mapping[str, Any]) -> tuple[Point, ...]:
+           extras: Extras) -> tuple[Point, ...]:
     """All points of a sheet in their order; those that are a person's to judge say so.
 
-    ``html`` is the finished page, ``redone`` the page done again, ``verified``
-    the statement on the program's own verification.
+    ``html`` is the finished page, ``redone`` the page done again, ``extras``
+    what is known of the sheet beside its record.
     """
-    view = View.of(record, html, redone, comparison, verified)
+    view = View.of(record, html, redone, comparison, extras)
     found = []
     for number, group, text in CATALOGUE:
         verdict, where = JUDGES[number](view) if number in JUDGES else (PERSON, "")

@@ -7,8 +7,8 @@ from itertools import pairwise
 
 from calcpack.points.point import IDLE, MET, Data, Judge, Verdict, View, all_of, decided
 from calcpack.record import Record
-from calcpack.review.page_reader import table_of
-from calcpack.review.reckoning import si_value
+from calcpack.reread.page_reader import table_of
+from calcpack.reread.reckoning import si_value
 
 ISO_DATE = re.compile(r"\b\d{4}-\d{2}-\d{2}\b")
 EDITION = re.compile(r"\b(19|20)\d\d\b|edition|revision|\brev\b", re.IGNORECASE)
@@ -135,7 +135,7 @@ def _ambient(view: View) -> Verdict:
 
 def si_value_of(entry: Data) -> float:
     """The SI value of an entry's printed number."""
-    from calcpack.review.terms import Printed
+    from calcpack.reread.terms import Printed
     return si_value(Printed(entry["shown"], entry["unit"]))
 
 

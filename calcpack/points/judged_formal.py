@@ -5,7 +5,7 @@ import re
 
 from calcpack.points.point import IDLE, MET, PERSON, UNMET, Judge, Verdict, View, all_of, decided, shortened
 from calcpack.record import Record
-from calcpack.review.page_reader import rows, table_of
+from calcpack.reread.page_reader import rows, table_of
 
 LEFT_OUT = "IOQSXZ"
 PLACE = re.compile(r"\b(pp?\.|pages?|clause|section|sect\.|§|annex|art\.|article|eqs?\.|equation|tables?|fig\.|ex\.|"
@@ -111,7 +111,7 @@ def _register(view: View) -> Verdict:
     """The register's row of this sheet, made as the register makes it, beside the sheet."""
     from calcpack.render.register import register_html
     from calcpack.render.sheet import file_stem
-    from calcpack.review.elements import elements_of
+    from calcpack.reread.elements import elements_of
     sheet = view.sheet
     text = elements_of(register_html([Record(view.record)], [file_stem(sheet["number"])], pdf=False)).text
     wanted = [sheet["number"], " ".join(sheet["title"].split()), sheet["revision"], sheet["status"].replace("-", " "),
@@ -176,7 +176,7 @@ def _headed(view: View) -> Verdict:
 
 
 def _named(view: View) -> Verdict:
-    from calcpack.review.page_reader import symbol_in
+    from calcpack.reread.page_reader import symbol_in
     known = {symbol_in(cells[0]) for cells in rows(table_of(view.parts.get("nomenclature"), "nomenclature"))}
     used = {symbol_in(cells[0]) for cells in rows(table_of(view.parts.get("inputs"), "inputs"))}
     for equation in view.page.all(".equation"):

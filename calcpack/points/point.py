@@ -5,8 +5,10 @@ from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass
 from typing import Any
 
-from calcpack.review.elements import Element, elements_of
-from calcpack.review.from_print import Redone
+from calcpack.render.pages import Extras
+from calcpack.reread.elements import Element, elements_of
+from calcpack.reread.from_print import Redone
+from calcpack.verification.statement import statement
 
 MET, UNMET, IDLE, PERSON = "met", "not met", "not applicable", "for a person"
 
@@ -36,13 +38,15 @@ class View:
     redone: Redone
     comparison: Data | None
     verified: Data
+    extras: Extras
 
     @classmethod
-    def of(cls, record: Data, html: str, redone: Redone, comparison: Data | None, verified: Data) -> View:
+    def of(cls, record: Data, html: str, redone: Redone, comparison: Data | None, extras: Extras) -> View:
         """The view of one sheet."""
         page = elements_of(html)
         parts = {part.id.removeprefix("part-"): part for part in page.all(".part")}
-        return cls(record, html, page, parts, redone, comparison, verified)
+        verified = statement(record, extras.verification)
+        return cls(record, html, page, parts, redone, comparison, verified, extras)
 
     @property
     def sheet(self) -> Data:

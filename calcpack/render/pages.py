@@ -22,11 +22,16 @@ class Extras:
     """What is known of a sheet beside its record.
 
     ``verification`` is the record of a run of the published checks;
+    ``review`` how the checker's marks and the signatures stand (None where
+    the sheet has no review file); ``family`` what the sheet takes from others,
+    gives to others, and the revisions issued before and after it;
     ``checklist`` the points of the sheet and ``anew`` its results reckoned
     anew from the page, both empty until the page has been looked at.
     """
 
     verification: Data | None = None
+    review: Any | None = None
+    family: Any | None = None
     checklist: tuple[Any, ...] = ()
     anew: tuple[Any, ...] = ()
 

@@ -12,7 +12,7 @@ import tempfile
 from collections.abc import Callable, Iterator, Mapping, Sequence
 from concurrent.futures import ProcessPoolExecutor
 from contextlib import contextmanager
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path, PurePosixPath
 from typing import Any
 
@@ -21,12 +21,11 @@ from calcpack.points import Point, points, unmet
 from calcpack.record import Record
 from calcpack.render.assets import copy_assets
 from calcpack.render.fluid_page import fluid_pages
-from calcpack.render.pages import Extras
+from calcpack.render.pages import NO_EXTRAS, Extras
 from calcpack.render.pdf import write_pdf
 from calcpack.render.register import register_html
 from calcpack.render.sheet import file_stem, picture_name, sheet_html
-from calcpack.review.from_print import require, require_same
-from calcpack.verification.statement import statement
+from calcpack.reread.from_print import require, require_same
 
 MANIFEST = ".calcpack-site.json"
 HALF_MM, WIDE_MM = 80.0, 165.0
@@ -45,12 +44,12 @@ class Site:
 
 
 def build_site(items: Sequence[Item], folder: Path, *, pdf: bool = True, jobs: int = 1,
-               progress: Progress | None = None, verifications: Mapping[str, Data] | None = None) -> Site:
+               progress: Progress | None = None, extras: Mapping[str, Extras] | None = None) -> Site:
     """Builds the site of the given records, each with its comparison or None.
 
     Every page is read again and done again from its print before anything is
-    moved into place. ``verifications`` gives the record of a run of the
-    published checks by the number of the sheet that it goes with.
+    moved into place. ``extras`` gives what is known of a sheet beside its
+    record, by the sheet's number.
 
     ``jobs`` processes share the sheets; what is written is the same for any
     number of them. ``progress`` is called with each sheet's number as it is
@@ -69,7 +68,7 @@ def build_site(items: Sequence[Item], folder: Path, *, pdf: bool = True, jobs: i
     with _aside(folder) as aside:
         names = ["index.html", *(f"assets/{name.as_posix()}" for name in copy_assets(aside / "assets"))]
         open_points = {}
-        for record, (written, points_open) in _sheets(items, aside, pdf, jobs, verifications or {}):
+        for record, (written, points_open) in _sheets(items, aside, pdf, jobs, extras or {}):
             names += written
             open_points[record.number] = points_open
             if progress is not None:
@@ -100,9 +99,9 @@ def _stems(items: Sequence[Item]) -> list[str]:
 
 
 def _sheets(items: Sequence[Item], aside: Path, pdf: bool, jobs: int,
-            verifications: Mapping[str, Data]) -> Iterator[tuple[Record, Written]]:
+            extras: Mapping[str, Extras]) -> Iterator[tuple[Record, Written]]:
     """Writes the sheets, in order; gives each record with the names of its files and its open points."""
-    tasks = [(record, comparison, aside, pdf, verifications.get(record.number)) for record, comparison in items]
+    tasks = [(record, comparison, aside, pdf, extras.get(record.number, NO_EXTRAS)) for record, comparison in items]
     if jobs <= 1 or len(tasks) <= 1:
         for task in tasks:
             yield task[0], write_sheet(task)
@@ -120,7 +119,7 @@ Written = tuple[list[str], tuple[Point, ...]]
 """The names of a sheet's files, and the points that it does not meet."""
 
 
-def write_sheet(task: tuple[Record, Data | None, Path, bool, Data | None]) -> Written:
+def write_sheet(task: tuple[Record, Data | None, Path, bool, Extras]) -> Written:
     """One sheet's page, record, figures and PDF into a folder; names are relative to it.
 
     Raises
@@ -128,9 +127,9 @@ def write_sheet(task: tuple[Record, Data | None, Path, bool, Data | None]) -> Wr
     BrokenPrintError
         Where the page's numbers cannot be had from what it prints.
     """
-    record, comparison, folder, pdf, verification = task
+    record, comparison, folder, pdf, extras = task
     stem, drawn = file_stem(record.number), draw(record)
-    pages = judged_pages(record, comparison, drawn, pdf, verification)
+    pages = judged_pages(record, comparison, drawn, pdf, extras)
     files = {f"{stem}.html": pages.screen, f"{stem}.json": record.to_json()}
     files |= {picture_name(figure, stem): figure.svg_text for figure in drawn}
     for name, text in files.items():
@@ -151,12 +150,12 @@ class Pages:
 
 
 def judged_pages(record: Record, comparison: Data | None, drawn: tuple[Any, ...], pdf: bool,
-                 verification: Data | None) -> Pages:
+                 extras: Extras = NO_EXTRAS) -> Pages:
     """The finished pages: made once to be done again and judged, then with the list of points that came out."""
-    first = sheet_html(record, comparison=comparison, figures=drawn, pdf=pdf, extras=Extras(verification))
+    first = sheet_html(record, comparison=comparison, figures=drawn, pdf=pdf, extras=extras)
     redone = require(first, record.number)
-    listed = points(record.data, first, redone, comparison, statement(record.data, verification))
-    extras = Extras(verification, listed, redone.whole)
+    listed = points(record.data, first, redone, comparison, extras)
+    extras = replace(extras, checklist=listed, anew=redone.whole)
     screen = sheet_html(record, comparison=comparison, figures=drawn, pdf=pdf, extras=extras)
     paper = sheet_html(record, comparison=comparison, figures=drawn, for_print=True, extras=extras) if pdf else ""
     require_same(first, [page for page in (screen, paper) if page], record.number)

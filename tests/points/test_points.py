@@ -19,8 +19,7 @@ from calcpack.record import Record
 from calcpack.render.pages import Extras
 from calcpack.render.sheet import sheet_html
 from calcpack.render.site import judged_pages
-from calcpack.review.from_print import redo
-from calcpack.verification.statement import statement
+from calcpack.reread.from_print import redo
 
 SPECS = Path(__file__).parent.parent.parent / "specs"
 Data = dict[str, Any]
@@ -42,7 +41,7 @@ class Sheet:
     def judge(self, data: Data | None = None, html: str | None = None) -> dict[int, Point]:
         data = data if data is not None else self.record.data
         found = points(data, html if html is not None else self.html, self.redone, self.comparison,
-                       statement(data, None))
+                       Extras())
         return {one.number: one for one in found}
 
 
@@ -172,7 +171,7 @@ def test_signatures_of_one_person_do_not_do(pump: Sheet) -> None:
 
 
 def test_the_sheet_ends_with_the_list_and_with_its_results_anew(pump: Sheet) -> None:
-    pages = judged_pages(pump.record, pump.comparison, pump.figures, True, None)
+    pages = judged_pages(pump.record, pump.comparison, pump.figures, True)
     for page in (pages.screen, pages.paper):
         at = page.index('id="part-checklist"')
         assert page.index('id="part-history"') < at < page.index('id="part-machine"')

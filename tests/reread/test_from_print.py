@@ -8,7 +8,7 @@ from collections import Counter
 import pytest
 from mutations import KINDS, Place, changed, places
 
-from calcpack.review.from_print import BrokenPrintError, redo, require, require_same
+from calcpack.reread.from_print import BrokenPrintError, redo, require, require_same
 
 SEED = 20261201
 COUNT = 200
@@ -86,8 +86,8 @@ def test_the_reader_knows_no_record() -> None:
     """Nothing of the room reads a record, a plan or a solution."""
     from pathlib import Path
 
-    import calcpack.review
-    for path in Path(calcpack.review.__file__).parent.glob("*.py"):
+    import calcpack.reread
+    for path in Path(calcpack.reread.__file__).parent.glob("*.py"):
         text = path.read_text("utf-8")
         assert not re.search(r"calcpack\.(record|plan|solving|checks|methods|formula\.(parse|evaluate|tree))", text)
 

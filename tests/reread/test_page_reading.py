@@ -12,12 +12,12 @@ from calcpack.formula.evaluate import value
 from calcpack.formula.parse import parse, parse_condition
 from calcpack.formula.tree import Binary, Call, Negative, Node, Quantity
 from calcpack.formula.typeset import equation_html, node_html, quantity_html, symbol_html
-from calcpack.review.elements import elements_of
-from calcpack.review.linear import linear
-from calcpack.review.printed_fluids import definition_from, property_name
-from calcpack.review.reading import UnreadableError, read_line, read_value
-from calcpack.review.reckoning import last_place, reckoned
-from calcpack.review.terms import LookUp, Printed
+from calcpack.reread.elements import elements_of
+from calcpack.reread.linear import linear
+from calcpack.reread.printed_fluids import definition_from, property_name
+from calcpack.reread.reading import UnreadableError, read_line, read_value
+from calcpack.reread.reckoning import last_place, reckoned
+from calcpack.reread.terms import LookUp, Printed
 
 
 def _line(html: str) -> str:
@@ -109,8 +109,8 @@ def test_a_fluid_is_stated_in_full(definition: FluidDefinition) -> None:
 
 
 def test_a_zero_that_is_not_the_fluids_own_is_refused() -> None:
-    from calcpack.review.printed_fluids import open_printed
-    from calcpack.review.printed_page import PrintedFluid
+    from calcpack.reread.printed_fluids import open_printed
+    from calcpack.reread.printed_page import PrintedFluid
     own = "the equation's own zero of h and s, as in the property library"
     said = f"{own}; saturated liquid at 0.01 °C: h = 0.00 kJ/kg, s = 0.0000 kJ/(kg·K)"
     assert open_printed(PrintedFluid("F1", "water", {"As stated": "water", "Reference state": said}))

@@ -9,8 +9,8 @@ from __future__ import annotations
 import re
 from dataclasses import dataclass
 
-from calcpack.review import linear as at
-from calcpack.review.terms import Function, LookUp, Minus, Name, Printed, Sign, Term
+from calcpack.reread import linear as at
+from calcpack.reread.terms import Function, LookUp, Minus, Name, Printed, Sign, Term
 from calcpack.units.spellings import UNITS
 
 SYMBOL = (f"(?:Δ?{at.ITALIC}[^{at.UPRIGHT}]+{at.UPRIGHT}|[A-Za-zΑ-ω][A-Za-z0-9Α-ω]*)"

@@ -4,10 +4,10 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import dataclass, replace
 
-from calcpack.review.linear import plain
-from calcpack.review.printed_page import Value
-from calcpack.review.reckoning import last_place, places_apart, si_value
-from calcpack.review.terms import Printed
+from calcpack.reread.linear import plain
+from calcpack.reread.printed_page import Value
+from calcpack.reread.reckoning import last_place, places_apart, si_value
+from calcpack.reread.terms import Printed
 from calcpack.units import unit
 
 ALLOWED = 1.0

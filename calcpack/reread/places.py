@@ -5,12 +5,12 @@ import math
 from collections.abc import Iterator
 
 from calcpack.errors import CalcpackError
-from calcpack.review.finding import Found, compared, equal, twins, within
-from calcpack.review.linear import BELOW, BELOW_END, plain
-from calcpack.review.printed_page import Cell, PrintedInput, PrintedLimit, Value
-from calcpack.review.printed_sheet import PrintedSheet
-from calcpack.review.reckoning import last_place, si_value
-from calcpack.review.terms import Printed
+from calcpack.reread.finding import Found, compared, equal, twins, within
+from calcpack.reread.linear import BELOW, BELOW_END, plain
+from calcpack.reread.printed_page import Cell, PrintedInput, PrintedLimit, Value
+from calcpack.reread.printed_sheet import PrintedSheet
+from calcpack.reread.reckoning import last_place, si_value
+from calcpack.reread.terms import Printed
 from calcpack.units import read_quantity, unit
 
 

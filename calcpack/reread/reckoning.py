@@ -5,8 +5,8 @@ import math
 from collections.abc import Callable, Mapping
 from decimal import Decimal
 
-from calcpack.review.reading import UnreadableError
-from calcpack.review.terms import Function, LookUp, Minus, Name, Printed, Sign, Term
+from calcpack.reread.reading import UnreadableError
+from calcpack.reread.terms import Function, LookUp, Minus, Name, Printed, Sign, Term
 from calcpack.units import unit
 
 Property = Callable[[LookUp, tuple[float, ...]], float]

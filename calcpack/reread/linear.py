@@ -9,7 +9,7 @@ from __future__ import annotations
 import re
 import unicodedata
 
-from calcpack.review.elements import Element
+from calcpack.reread.elements import Element
 
 ITALIC, UPRIGHT = "\ue000", "\ue001"
 BELOW, BELOW_END = "\ue002", "\ue003"

@@ -8,12 +8,12 @@ from typing import Any
 from calcpack.errors import CalcpackError
 from calcpack.fluids import FluidDefinition, open_fluid
 from calcpack.formula.symbols import GREEK
-from calcpack.review.linear import BELOW, BELOW_END, MARKS
-from calcpack.review.printed_page import PrintedFluid
-from calcpack.review.reading import UnreadableError
-from calcpack.review.reckoning import places_apart, si_value
-from calcpack.review.step_reader import loose_value
-from calcpack.review.terms import LookUp
+from calcpack.reread.linear import BELOW, BELOW_END, MARKS
+from calcpack.reread.printed_page import PrintedFluid
+from calcpack.reread.reading import UnreadableError
+from calcpack.reread.reckoning import places_apart, si_value
+from calcpack.reread.step_reader import loose_value
+from calcpack.reread.terms import LookUp
 from calcpack.units import unit
 
 _LETTERS = {letter: name for name, letter in GREEK.items()}

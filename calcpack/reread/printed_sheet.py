@@ -5,12 +5,12 @@ import math
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 
-from calcpack.review.finding import Found
-from calcpack.review.linear import plain
-from calcpack.review.printed_fluids import PrintedFluids
-from calcpack.review.printed_page import Page, SeriesLines, Value
-from calcpack.review.reading import UnreadableError, read_line
-from calcpack.review.terms import LookUp, Printed, Term
+from calcpack.reread.finding import Found
+from calcpack.reread.linear import plain
+from calcpack.reread.printed_fluids import PrintedFluids
+from calcpack.reread.printed_page import Page, SeriesLines, Value
+from calcpack.reread.reading import UnreadableError, read_line
+from calcpack.reread.terms import LookUp, Printed, Term
 
 
 @dataclass(frozen=True, slots=True)

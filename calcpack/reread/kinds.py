@@ -5,9 +5,9 @@ import math
 from collections.abc import Callable, Iterator, Mapping
 from dataclasses import replace
 
-from calcpack.review.finding import Found, compared, equal, twins
-from calcpack.review.linear import plain
-from calcpack.review.printed_page import (
+from calcpack.reread.finding import Found, compared, equal, twins
+from calcpack.reread.linear import plain
+from calcpack.reread.printed_page import (
     BranchLine,
     CaseLines,
     End,
@@ -19,10 +19,10 @@ from calcpack.review.printed_page import (
     SeriesRow,
     TotalLine,
 )
-from calcpack.review.printed_sheet import PrintedSheet
-from calcpack.review.reading import UnreadableError
-from calcpack.review.reckoning import last_place, reckoned, si_value
-from calcpack.review.terms import LookUp, Printed, Term, names_in, said
+from calcpack.reread.printed_sheet import PrintedSheet
+from calcpack.reread.reading import UnreadableError
+from calcpack.reread.reckoning import last_place, reckoned, si_value
+from calcpack.reread.terms import LookUp, Printed, Term, names_in, said
 from calcpack.units import unit
 
 REDUCTIONS: dict[str, Callable[[list[float]], float]] = {

@@ -11,12 +11,12 @@ from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
 
 from calcpack.errors import CalcpackError, Fault, NoAnswerError
-from calcpack.review import again, kinds, places
-from calcpack.review.finding import ALLOWED, Found
-from calcpack.review.page_reader import read_page
-from calcpack.review.printed_page import Page, PrintedStep
-from calcpack.review.printed_sheet import PrintedSheet
-from calcpack.review.reading import UnreadableError
+from calcpack.reread import again, kinds, places
+from calcpack.reread.finding import ALLOWED, Found
+from calcpack.reread.page_reader import read_page
+from calcpack.reread.printed_page import Page, PrintedStep
+from calcpack.reread.printed_sheet import PrintedSheet
+from calcpack.reread.reading import UnreadableError
 
 _CANNOT = (UnreadableError, CalcpackError, ArithmeticError, ValueError, TypeError, KeyError)
 """What a wrong character on a page can come to when it is read or reckoned."""

@@ -4,9 +4,9 @@ from __future__ import annotations
 import re
 from collections.abc import Iterator
 
-from calcpack.review.elements import Element
-from calcpack.review.linear import ABOVE_END, THIN, linear, plain
-from calcpack.review.printed_page import (
+from calcpack.reread.elements import Element
+from calcpack.reread.linear import ABOVE_END, THIN, linear, plain
+from calcpack.reread.printed_page import (
     BranchLine,
     CaseColumn,
     CaseLines,
@@ -22,8 +22,8 @@ from calcpack.review.printed_page import (
     TotalLine,
     Value,
 )
-from calcpack.review.reading import UnreadableError, read_value
-from calcpack.review.terms import Printed
+from calcpack.reread.reading import UnreadableError, read_value
+from calcpack.reread.terms import Printed
 
 BRACKETED = re.compile(r"^(.*?)(?: \((-?−?[\d.]+[ \u202f]?(?:°C|°F|K|°R))\))?$", re.DOTALL)
 LEFT = re.compile(r"At the printed solution the equation is (less than )?(.*?) from zero\.")

@@ -8,13 +8,13 @@ from __future__ import annotations
 import re
 from collections.abc import Iterator
 
-from calcpack.review import step_reader
-from calcpack.review.elements import Element, elements_of
-from calcpack.review.linear import linear, plain
-from calcpack.review.printed_page import Cell, Page, PrintedFluid, PrintedInput, PrintedLimit, PrintedStep, Seen, Value
-from calcpack.review.reading import UnreadableError, read_value
-from calcpack.review.step_reader import columns_of, loose_value, value_in
-from calcpack.review.terms import Printed
+from calcpack.reread import step_reader
+from calcpack.reread.elements import Element, elements_of
+from calcpack.reread.linear import linear, plain
+from calcpack.reread.printed_page import Cell, Page, PrintedFluid, PrintedInput, PrintedLimit, PrintedStep, Seen, Value
+from calcpack.reread.reading import UnreadableError, read_value
+from calcpack.reread.step_reader import columns_of, loose_value, value_in
+from calcpack.reread.terms import Printed
 
 
 def read_page(html: str) -> Page:

@@ -11,11 +11,11 @@ from collections.abc import Callable, Iterable, Mapping, Sequence
 from itertools import pairwise
 
 from calcpack.errors import CalcpackError
-from calcpack.review.finding import Found, compared, within
-from calcpack.review.kinds import REDUCTIONS
-from calcpack.review.linear import plain
-from calcpack.review.places import as_written
-from calcpack.review.printed_page import (
+from calcpack.reread.finding import Found, compared, within
+from calcpack.reread.kinds import REDUCTIONS
+from calcpack.reread.linear import plain
+from calcpack.reread.places import as_written
+from calcpack.reread.printed_page import (
     CaseLines,
     LookupLines,
     OptimumLines,
@@ -25,10 +25,10 @@ from calcpack.review.printed_page import (
     SeriesRow,
     TotalLine,
 )
-from calcpack.review.printed_sheet import PrintedSheet
-from calcpack.review.reading import UnreadableError
-from calcpack.review.reckoning import last_place, reckoned, si_value
-from calcpack.review.terms import Term, names_in
+from calcpack.reread.printed_sheet import PrintedSheet
+from calcpack.reread.reading import UnreadableError
+from calcpack.reread.reckoning import last_place, reckoned, si_value
+from calcpack.reread.terms import Term, names_in
 from calcpack.units import unit
 
 CLOSE = 1e-13

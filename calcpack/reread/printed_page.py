@@ -3,7 +3,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from calcpack.review.terms import Printed
+from calcpack.reread.terms import Printed
 
 
 @dataclass(frozen=True, slots=True)
