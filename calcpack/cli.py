@@ -14,7 +14,12 @@ from typing import Any
 import click
 
 from calcpack import __version__
+from calcpack.commands.compare import compare
+from calcpack.commands.issue import issue
+from calcpack.commands.package import package
 from calcpack.commands.reporting import CONTEXT, reported
+from calcpack.commands.review import review
+from calcpack.commands.verify import verify
 from calcpack.errors import CommandError, Fault
 
 
@@ -93,47 +98,24 @@ def _json(records: Sequence[Any]) -> str:
 @click.option("--jobs", type=click.IntRange(1, 64), default=None, help="Processes; as many as cores if left out.")
 @click.option("--verification", type=click.Path(path_type=Path),
               help="Record of 'calcpack self-check'; verification.json beside a spec if left out.")
+@click.option("--fresh", is_flag=True, help="Take nothing over from the last build.")
 @click.option("--strict", is_flag=True, help="Exit status 1 if a sheet leaves a point of its checklist unmet.")
 @click.option("-q", "--quiet", is_flag=True, help="Print nothing but faults.")
 @reported
 def build(sources: tuple[Path, ...], output: Path, no_pdf: bool, jobs: int | None, verification: Path | None,
-          strict: bool, quiet: bool) -> int:
+          fresh: bool, strict: bool, quiet: bool) -> int:
     """Build the site: register, a page and a PDF a sheet, records. SOURCES are specs or folders (default: specs)."""
-    from calcpack.pipeline import build_package
+    from calcpack.building import build_package
     from calcpack.terminal import print_built, print_unmet, progress
     with progress(quiet) as tell:
         package = build_package(sources or (Path("specs"),), output, pdf=not no_pdf, jobs=jobs, tell=tell,
-                                verification=verification)
+                                verification=verification, fresh=fresh)
     if not quiet:
         print_built(package, output)
     if strict:
         print_unmet(package)
     failed = any(record.failed_limits for record in package.records)
     return 1 if failed or (strict and any(package.unmet.values())) else 0
-
-
-@main.command()
-@click.argument("old")
-@click.argument("new")
-@click.option("--format", "shape", type=click.Choice(["text", "markdown", "html", "json"]), default="text",
-              show_default=True)
-@click.option("-o", "--output", type=click.Path(path_type=Path), help="File to write; else printed.")
-@reported
-def compare(old: str, new: str, shape: str, output: Path | None) -> int:
-    """Show what changed between two revisions of a sheet.
-
-    OLD and NEW are each a spec, a record, a PDF that carries one, or REV:path in git. Exit status 1 if they differ.
-    """
-    from calcpack.revisions import differs, folder_of, load, rendered
-    from calcpack.revisions.compare import compare as compared
-    from calcpack.writing import write_whole
-    comparison = compared(load(old), load(new), folder=folder_of(new))
-    text = rendered(comparison, shape)
-    if output is None:
-        click.echo(text, nl=False)
-    else:
-        write_whole(output, text)
-    return 1 if differs(comparison) else 0
 
 
 @main.command(name="methods")
@@ -181,7 +163,9 @@ def self_check(method: str | None, as_json: bool, output: Path | None, quiet: bo
     from calcpack.terminal import print_verification, progress
     from calcpack.verification.run import self_check as run
     from calcpack.verification.run import to_json
-    from calcpack.writing import write_whole
+    from calcpack.writing import spare_sources, write_whole
+    if output is not None:
+        spare_sources(output)
     with progress(quiet or as_json) as tell:
         verification = run(method, tell)
     if output is not None:
@@ -202,3 +186,10 @@ def schema() -> int:
     from calcpack.spec import json_schema
     click.echo(json.dumps(json_schema(), indent=2, ensure_ascii=False))
     return 0
+
+
+main.add_command(issue)
+main.add_command(compare)
+main.add_command(review)
+main.add_command(package)
+main.add_command(verify)

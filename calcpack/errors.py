@@ -7,6 +7,7 @@ text of a library never stands in the message; it is kept as ``detail``.
 from __future__ import annotations
 
 import difflib
+import textwrap
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, replace
 
@@ -116,32 +117,40 @@ def nearest(word: str, known: Iterable[str]) -> str | None:
 
 
 def describe(faults: Iterable[Fault], texts: Mapping[str, str] | None = None,
-             ending: str = "nothing was written") -> str:
+             ending: str = "nothing was written", width: int | None = None) -> str:
     """All faults as a compiler prints them.
 
     ``texts`` gives the text of each file by name, for the source lines; the
-    last line counts the faults and says ``ending``.
+    last line counts the faults and says ``ending``. Sentences are wrapped to
+    ``width`` columns, source lines are not; None wraps nothing.
     """
     faults = tuple(faults)
-    blocks = [_block(fault, texts or {}) for fault in faults]
+    blocks = [_block(fault, texts or {}, width) for fault in faults]
     count = "1 error" if len(faults) == 1 else f"{len(faults)} errors"
     return "\n".join([*blocks, f"{count}, {ending}."])
 
 
-def _block(fault: Fault, texts: Mapping[str, str]) -> str:
-    lines = [f"{fault.place}: {fault.what}" if fault.place else f"error: {fault.what}"]
+def _block(fault: Fault, texts: Mapping[str, str], width: int | None) -> str:
+    lines = _wrapped("", f"{fault.place}: {fault.what}" if fault.place else f"error: {fault.what}", width, hanging=2)
     marked = _source_line(fault, texts)
-    if marked:
-        lines += marked
-    if fault.found is not None:
-        lines.append(f"    found:    {fault.found}")
-    if fault.expected is not None:
-        lines.append(f"    expected: {fault.expected}")
-    if fault.hint is not None and not marked:
-        lines.append(f"    hint:     {fault.hint}")
-    if fault.detail is not None:
-        lines.append(f"    detail:   {fault.detail}")
+    hint = fault.hint
+    if marked and hint is not None and (width is None or len(marked[1]) + 1 + len(hint) <= width):
+        marked[1] += f" {hint}"
+        hint = None
+    lines += marked
+    for label, text in (("found:", fault.found), ("expected:", fault.expected), ("hint:", hint),
+                        ("detail:", fault.detail)):
+        if text is not None:
+            lines += _wrapped(f"    {label:<9} ", text, width, hanging=14)
     return "\n".join(lines)
+
+
+def _wrapped(label: str, text: str, width: int | None, *, hanging: int) -> list[str]:
+    """A label and its text in lines of at most ``width`` columns, those after the first set in by ``hanging``."""
+    if width is None or (len(label) + len(text) <= width and "\n" not in text):
+        return [label + text]
+    return textwrap.wrap(text, width, initial_indent=label, subsequent_indent=" " * hanging,
+                         break_long_words=False, break_on_hyphens=False)
 
 
 def _source_line(fault: Fault, texts: Mapping[str, str]) -> list[str]:
@@ -156,7 +165,7 @@ def _source_line(fault: Fault, texts: Mapping[str, str]) -> list[str]:
     start, row = _window(row, place.column)
     room = max(1, min(place.length, len(row) - start))
     caret = " " * start + "^" * room
-    return ["    " + row, "    " + (f"{caret} {fault.hint}" if fault.hint else caret)]
+    return ["    " + row, "    " + caret]
 
 
 def _window(row: str, column: int, width: int = 110) -> tuple[int, str]:

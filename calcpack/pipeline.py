@@ -1,38 +1,36 @@
-"""The order of the stages, in one place: spec, plan, solution, record, findings, outputs.
+"""The order of the stages, in one place: spec, plan, solution, record, findings, comparison; outputs follow.
 
-Each stage takes a frozen value and returns another; nothing else knows the order.
+Each stage takes a frozen value and returns another; nothing else knows the
+order. :mod:`building` takes many specs through it to a site.
 """
 from __future__ import annotations
 
-import os
-import re
-from collections.abc import Callable, Mapping, Sequence
-from dataclasses import dataclass
+from collections.abc import Callable, Iterable, Mapping, Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from calcpack.errors import CalcpackError, CommandError, Fault, NoAnswerError, SpecError
+from calcpack.package.carrying import Taken, Task, solved_in_order
+from calcpack.package.glance import specs_in
+from calcpack.package.links import Text, Texts, family_of, takes_from_others
+from calcpack.record.carried import Carried, with_origins
 
 if TYPE_CHECKING:
-    from calcpack.points import Point
     from calcpack.record import Record
-    from calcpack.spec import Spec
+    from calcpack.review.standing import Standing
 
-Tell = Callable[[str], None]
-
-
-@dataclass(frozen=True, slots=True)
-class Package:
-    """What a build made: the records in the order of their numbers, the files written, each sheet's open points."""
-
-    records: tuple[Record, ...]
-    files: tuple[Path, ...]
-    unmet: Mapping[str, tuple[Point, ...]]
+VERIFICATION = "verification.json"
+"""Name of the record of a run of the published checks, beside the specs that it goes with."""
 
 
 def solve_spec(path: Path, overrides: Mapping[str, str] | None = None, *, text: str | None = None,
-               name: str | None = None) -> Record:
+               name: str | None = None, carried: Mapping[str, Carried] | None = None,
+               beside: Texts | None = None) -> Record:
     """A spec file (or ``text`` in its place, called ``name``) to its record, findings included.
+
+    What it takes from other sheets is had from their specs in its folder, or
+    from ``beside`` in the place of that folder; they are solved first. With
+    ``carried`` it is had from there alone, by the symbol of the input.
 
     Raises
     ------
@@ -40,11 +38,43 @@ def solve_spec(path: Path, overrides: Mapping[str, str] | None = None, *, text: 
         SpecError for what is wrong in the spec, all at once; NoAnswerError
         where the numbers have no answer or break a law.
     """
-    return _solved(path, overrides, text=text, name=name)[1]
+    if carried is not None:
+        return solved_alone(path, overrides, text=text, name=name, carried=carried)
+    texts = dict(beside or {})
+    if text is not None:
+        texts[path] = Text(text.encode("utf-8", "surrogatepass"), name or str(path))
+    return _solved_with_sources([path], overrides, texts, look=beside is None)[0]
 
 
-def _solved(path: Path, overrides: Mapping[str, str] | None = None, *, text: str | None = None,
-            name: str | None = None) -> tuple[Spec, Record]:
+def solve_all(paths: Sequence[Path], overrides: Mapping[str, str] | None = None) -> list[Record]:
+    """Records of several specs; the faults of all of them come together.
+
+    ``overrides`` hold for the specs named, not for others that these take from.
+    """
+    return _solved_with_sources(paths, overrides, {}, look=True)
+
+
+def _solved_with_sources(paths: Sequence[Path], overrides: Mapping[str, str] | None, texts: Texts, *,
+                         look: bool) -> list[Record]:
+    family = family_of(paths, texts, beside=look and any(takes_from_others(path, texts) for path in paths))
+
+    def solve(task: Task) -> Record | CalcpackError:
+        path, carried = task
+        given = texts.get(path)
+        try:
+            return solved_alone(path, overrides if path in paths else None, carried=carried,
+                                text=given.content.decode("utf-8", "surrogatepass") if given else None,
+                                name=given.name if given else None)
+        except CalcpackError as error:
+            return error
+    solved: dict[Path, Any] = solved_in_order(family, lambda tasks: [solve(task) for task in tasks])
+    raise_faults(solved.values())
+    return [solved[path] for path in paths]
+
+
+def solved_alone(path: Path, overrides: Mapping[str, str] | None = None, *, text: str | None = None,
+                 name: str | None = None, carried: Taken | None = None) -> Record:
+    """One spec to its record, with what it takes from other sheets given; raises like :func:`solve_spec`."""
     from calcpack.checks import examine
     from calcpack.record.build import build_record, with_findings
     from calcpack.solving import solved
@@ -54,66 +84,51 @@ def _solved(path: Path, overrides: Mapping[str, str] | None = None, *, text: str
     if spec is None:
         raise SpecError(faults)
     try:
-        solution = solved(bind(spec, overrides, faults))
+        solution = solved(bind(spec, overrides, faults, carried))
         record = build_record(solution)
-        return spec, with_findings(record, examine(solution, record))
+        record = with_findings(record, examine(solution, record))
     except NoAnswerError as error:
         # What has no answer is the case as a whole: the reader is told which sheet and where it begins.
         raise error.at(spec.place("case", "method", key=True)) from None
+    return with_origins(record, {symbol: one for symbol, one in (carried or {}).items()
+                                 if isinstance(one, Carried) and symbol not in (overrides or {})})
 
 
-def solve_all(paths: Sequence[Path], overrides: Mapping[str, str] | None = None) -> list[Record]:
-    """Records of several specs; the faults of all of them come together."""
-    return [record for _, record in _together([lambda path=path: _solved(path, overrides) for path in paths])]
-
-
-def _together(calls: Sequence[Callable[[], Any]]) -> list[Any]:
+def together(calls: Sequence[Callable[[], Any]]) -> list[Any]:
     """Make every call; raise the faults of all that failed, a wrong spec before a missing answer."""
-    done, failed = [], []
+    done: list[Any] = []
     for call in calls:
         try:
             done.append(call())
         except CalcpackError as error:
-            failed.append(error)
-    if failed:
-        kind = min(failed, key=lambda error: error.exit_status)
-        raise type(kind)(fault for error in failed for fault in error.faults)
+            done.append(error)
+    raise_faults(done)
     return done
 
 
-def build_package(sources: Sequence[Path], folder: Path, *, pdf: bool, jobs: int | None, tell: Tell,
-                  verification: Path | None = None) -> Package:
-    """Solve every spec in ``sources``, compare each with its baseline and write the site to ``folder``.
-
-    ``verification`` is the record of a run of the published checks; without
-    one, ``verification.json`` beside a spec is taken where there is one.
-
-    Raises
-    ------
-    CalcpackError
-        Before anything is written, with the faults of all specs.
-    """
-    from calcpack.render.pages import Extras
-    from calcpack.render.site import build_site
-    paths = spec_files(sources)
-    jobs = jobs or min(len(paths), os.cpu_count() or 1)
-    tell(f"solving {len(paths)} sheets" if len(paths) > 1 else "solving 1 sheet")
-    runs = _verifications(paths, verification)
-    found = list(zip(_solve_with_baselines(paths, jobs), runs, strict=True))
-    found.sort(key=lambda one: one[0][0].number)
-    solved = [pair for pair, _ in found]
-    _require_distinct(solved)
-    tell("writing pages" + (" and PDFs" if pdf else ""))
-    extras = {record.number: Extras(verification=run) for (record, _), run in found}
-    site = build_site(solved, folder, pdf=pdf, jobs=jobs, progress=tell, extras=extras)
-    return Package(tuple(record for record, _ in solved), site.files, site.unmet)
+def raise_faults(outcomes: Iterable[Any]) -> None:
+    """Raise the faults of all outcomes that are errors, each fault once; a wrong spec decides the kind."""
+    failed = [one for one in outcomes if isinstance(one, CalcpackError)]
+    if failed:
+        kind = min(failed, key=lambda error: error.exit_status)
+        raise type(kind)(dict.fromkeys(fault for error in failed for fault in error.faults))
 
 
-VERIFICATION = "verification.json"
-"""Name of the record of a run of the published checks, beside the specs that it goes with."""
+def record_and_comparison(path: Path) -> tuple[Record, dict[str, Any] | None]:
+    """A spec's record, and what changed against its baseline; None where it has none."""
+    record = solve_spec(path)
+    return record, comparison_of(path, record)
 
 
-def _verifications(paths: Sequence[Path], given: Path | None) -> list[dict[str, Any] | None]:
+def comparison_of(path: Path, record: Record) -> dict[str, Any] | None:
+    """What changed in a spec's record against its baseline; None where it has none."""
+    from calcpack.revisions import baseline_for, compare_records
+    from calcpack.spec import read_spec
+    baseline = baseline_for(read_spec(path), record)
+    return compare_records(baseline, record, folder=path.parent) if baseline is not None else None
+
+
+def verifications(paths: Sequence[Path], given: Path | None) -> list[dict[str, Any] | None]:
     """For each spec the run of the published checks that its sheet speaks of."""
     from calcpack.verification.run import read_verification
     files = [given or path.with_name(VERIFICATION) for path in paths]
@@ -121,22 +136,11 @@ def _verifications(paths: Sequence[Path], given: Path | None) -> list[dict[str, 
     return [read.get(file) for file in files]
 
 
-def _solve_with_baselines(paths: Sequence[Path], jobs: int) -> list[tuple[Record, dict | None]]:
-    if jobs == 1 or len(paths) == 1:
-        return _together([lambda path=path: record_and_comparison(path) for path in paths])
-    # Processes, not threads: a property state shared by two threads gives wrong values.
-    from concurrent.futures import ProcessPoolExecutor
-    with ProcessPoolExecutor(min(jobs, len(paths))) as pool:
-        futures = [pool.submit(record_and_comparison, path) for path in paths]
-        return _together([future.result for future in futures])
-
-
-def record_and_comparison(path: Path) -> tuple[Record, dict[str, Any] | None]:
-    """A spec's record, and what changed against its baseline; None where it has none."""
-    from calcpack.revisions import baseline_for, compare_records
-    spec, record = _solved(path)
-    baseline = baseline_for(spec, record)
-    return record, compare_records(baseline, record, folder=path.parent) if baseline is not None else None
+def reviews(paths: Sequence[Path], records: Sequence[Record]) -> list[Standing | None]:
+    """How the check of each sheet stands by the review file beside its spec; None where there is none."""
+    from calcpack.review.beside import standing_beside
+    return together([lambda path=path, record=record: standing_beside(path, record)
+                     for path, record in zip(paths, records, strict=True)])
 
 
 def spec_files(sources: Sequence[Path]) -> list[Path]:
@@ -150,7 +154,7 @@ def spec_files(sources: Sequence[Path]) -> list[Path]:
     found: list[Path] = []
     for source in sources:
         if source.is_dir():
-            inside = sorted(path for path in source.iterdir() if path.suffix in (".yaml", ".yml") and _is_spec(path))
+            inside = specs_in(source)
             if not inside:
                 raise CommandError(Fault(f"{source} holds no spec", expected="a .yaml file with the key 'calcpack'"))
             found += inside
@@ -159,17 +163,3 @@ def spec_files(sources: Sequence[Path]) -> list[Path]:
         else:
             raise CommandError(Fault(f"there is no file or folder {source}"))
     return list(dict.fromkeys(found))
-
-
-def _is_spec(path: Path) -> bool:
-    """Whether a file of a folder means to be a spec; a review file beside it, say, does not."""
-    return re.search(r"^['\"]?calcpack['\"]?\s*:", path.read_text("utf-8", errors="replace"), re.MULTILINE) is not None
-
-
-def _require_distinct(solved: Sequence[tuple[Record, Any]]) -> None:
-    numbers = [record.number for record, _ in solved]
-    twice = sorted({number for number in numbers if numbers.count(number) > 1})
-    if twice:
-        files = ", ".join(record.data["spec_file"] for record, _ in solved if record.number in twice)
-        raise CommandError(Fault(f"the sheet number {twice[0]} stands in more than one spec", found=files,
-                                 expected="a number of its own for each sheet"))

@@ -17,7 +17,7 @@ from calcpack.errors import CommandError, Fault, nearest
 from calcpack.units import shown_with_unit, unit
 
 if TYPE_CHECKING:
-    from calcpack.pipeline import Package
+    from calcpack.building import Package
     from calcpack.record import Record
 
 WIDTH = 80
@@ -163,7 +163,7 @@ def print_verification(verification: Mapping[str, Any], *, quiet: bool, written:
     _rows(out, "FAILS", ((one["row"], f"{one['case']}: {one['failure'] or _beyond(one)}") for one in failed))
     rows = []
     for name, done in verification["methods"].items():
-        rows.append((name, f"{done['cases']} cases", f"{done['values']} values",
+        rows.append((name, f"{done['cases']} {'case' if done['cases'] == 1 else 'cases'}", f"{done['values']} values",
                      f"{'within' if done['pass'] else 'NOT within'} what is allowed"))
     _rows(out, f"{verification['date']}, set {verification['test_set']}, calcpack "
           f"{verification['engine']['calcpack']}, CoolProp {verification['engine']['libraries']['CoolProp']}", rows)
@@ -216,18 +216,18 @@ def print_method(name: str) -> None:
         out.print("* taken where the spec is silent\n")
     _rows(out, "Fluids", ((role.name, f"{role.title}, such as {role.typical}") for role in method.roles(options)))
     base = needs_of(method, options)
-    _rows(out, "Inputs with these options (typical values are common practice)",
-          ((need.symbol, need.typical, need.title) for need in base.values()))
+    _rows(out, "Inputs with these options (value of common practice, limits where set)",
+          ((need.symbol, need.typical, need.bounds, need.title) for need in base.values()))
     _rows(out, "Further inputs with other options", _further(method, options, base))
     _rows(out, "Assumes", (("-", text) for text in method.assumes))
     _rows(out, "Leaves out", (("-", text) for text in method.leaves_out))
 
 
-def _further(method: Any, options: Mapping[str, str], base: Mapping[str, Any]) -> list[tuple[str, str, str]]:
+def _further(method: Any, options: Mapping[str, str], base: Mapping[str, Any]) -> list[tuple[str, str, str, str]]:
     """Inputs that appear when one option is set otherwise."""
     from calcpack.errors import SpecError
     from calcpack.methods.starter import needs_of
-    rows: dict[str, tuple[str, str, str]] = {}
+    rows: dict[str, tuple[str, str, str, str]] = {}
     for option in method.options:
         for value in option.values:
             try:
@@ -237,7 +237,8 @@ def _further(method: Any, options: Mapping[str, str], base: Mapping[str, Any]) -
                 continue
             for symbol, need in needs.items():
                 if symbol not in base:
-                    rows.setdefault(symbol, (symbol, need.typical, f"{need.title} ({option.name}: {value})"))
+                    title = f"{need.title} ({option.name}: {value})"
+                    rows.setdefault(symbol, (symbol, need.typical, need.bounds, title))
     return list(rows.values())
 
 

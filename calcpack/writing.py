@@ -48,6 +48,13 @@ def write_new(path: Path, content: str) -> None:
     write_whole(path, content)
 
 
+def spare_sources(path: Path) -> None:
+    """CommandError where ``path`` is a spec, a review file or a PDF that is there: a report never replaces one."""
+    if path.suffix.lower() in (".yaml", ".yml", ".pdf") and os.path.lexists(path):
+        raise CommandError(Fault(f"{path} is there already, and is no report",
+                                 hint="name another file; a spec or a PDF is never overwritten by a report"))
+
+
 def _umask() -> int:
     current = os.umask(0)
     os.umask(current)

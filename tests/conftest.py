@@ -7,6 +7,11 @@ from pathlib import Path
 from typing import Any
 
 import pytest
+from hypothesis import settings
+
+# A busy machine is no fault of the code: no test fails on wall time.
+settings.register_profile("untimed", deadline=None)
+settings.load_profile("untimed")
 
 SHEET = """\
 calcpack: 1

@@ -121,7 +121,7 @@ def test_status_2_where_the_spec_is_wrong_with_line_and_caret(cli, spec):
 def test_status_3_where_the_numbers_have_no_answer(cli, spec):
     result = cli("solve", spec("hopeless.yaml", old="T_h: 327", new="T_h: 1"))
     assert (result.exit_code, result.stdout) == (3, "")
-    assert result.stderr.startswith("hopeless.yaml:16:3: the hot isotherm is not above the cold one\n")
+    assert result.stderr.startswith("hopeless.yaml:21:3: the hot isotherm is not above the cold one\n")
     assert "hint" in result.stderr or "check the two temperatures" in result.stderr
 
 
@@ -245,6 +245,8 @@ def test_methods_and_fluids_tell_what_there_is(cli):
     listed = cli("methods").stdout
     assert all(name in listed for name in methods())
     assert "cyclopentane" in cli("methods", "organic-rankine").stdout
+    rows = cli("methods", "organic-rankine").stdout.splitlines()
+    assert any(row.split()[:6] == ["eta_t", "0.80", "above", "0", "to", "1"] for row in rows)
     assert "R-1234ze(E)" in cli("fluids").stdout
     assert json.loads(cli("schema").stdout)["type"] == "object"
     units = cli("methods", "--units").stdout

@@ -118,3 +118,35 @@ def test_exit_states():
     assert [kind.exit_status for kind in (NoAnswerError, RootError, FluidRangeError)] == [3] * 3
     assert MissingPartError.exit_status == 4
     assert all(issubclass(kind, CalcpackError) for kind in (SpecError, NoAnswerError, MissingPartError))
+
+
+LONG = Fault("step 2.3, T_c (condensing temperature at which the condenser has the wanted pinch): the equation has no "
+             "root in its bracket", Place("pump.yaml", 2, 3, 4), found="left minus right is -101.9 K at the low end "
+             "and -45.64 K at the high end", hint="the bracket runs from T_sink_in = 328.150 K to 380.513 K")
+
+
+def test_sentences_are_wrapped_to_the_width_and_source_lines_are_not():
+    assert describe([LONG], {"pump.yaml": TEXT}, width=80) == (
+        "pump.yaml:2:3: step 2.3, T_c (condensing temperature at which the condenser has\n"
+        "  the wanted pinch): the equation has no root in its bracket\n"
+        "      sink: {inlet: 60 degC, outlett: 70 degC}\n"
+        "      ^^^^ the bracket runs from T_sink_in = 328.150 K to 380.513 K\n"
+        "    found:    left minus right is -101.9 K at the low end and -45.64 K at the\n"
+        "              high end\n"
+        "1 error, nothing was written.")
+
+
+def test_a_hint_without_room_beside_its_caret_has_lines_of_its_own():
+    text = describe([LONG], {"pump.yaml": TEXT}, width=60).splitlines()
+    assert text[text.index("      ^^^^") + 1:] == [
+        "    found:    left minus right is -101.9 K at the low end", "              and -45.64 K at the high end",
+        "    hint:     the bracket runs from T_sink_in = 328.150 K to", "              380.513 K",
+        "1 error, nothing was written."]
+    assert max(map(len, text)) <= 60
+
+
+@pytest.mark.parametrize("width", [60, 80, 100])
+def test_wrapping_loses_no_word(width):
+    one = " ".join(describe([LONG], {"pump.yaml": TEXT}).replace("^^^^ ", "").split())
+    other = " ".join(describe([LONG], {"pump.yaml": TEXT}, width=width).split())
+    assert sorted(one.split()) == sorted(word for word in other.split() if word not in ("hint:", "^^^^"))

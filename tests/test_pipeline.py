@@ -81,13 +81,16 @@ def test_a_folder_without_a_spec_and_a_name_without_a_file_are_told(tmp_path):
 
 
 def test_two_sheets_of_one_number_are_refused():
-    from calcpack.pipeline import _require_distinct
+    from types import SimpleNamespace
+
+    from calcpack.building import require_distinct
     from calcpack.record import Record
     records = [Record({"sheet": {"number": number, "revision": "A"}, "spec_file": f"{name}.yaml"})
                for number, name in (("A-1", "one"), ("A-2", "two"), ("A-1", "three"))]
-    _require_distinct([(record, None) for record in records[:2]])
+    sheets = [SimpleNamespace(record=record) for record in records]
+    require_distinct(sheets[:2])
     with pytest.raises(CommandError) as caught:
-        _require_distinct([(record, None) for record in records])
+        require_distinct(sheets)
     fault = caught.value.faults[0]
     assert fault.what == "the sheet number A-1 stands in more than one spec"
     assert fault.found == "one.yaml, three.yaml"

@@ -7,7 +7,7 @@ import stat
 import pytest
 
 from calcpack.errors import CommandError
-from calcpack.writing import write_new, write_whole
+from calcpack.writing import spare_sources, write_new, write_whole
 
 
 def test_text_and_bytes_are_written_as_they_are(tmp_path):
@@ -77,3 +77,13 @@ def test_a_new_file_does_not_take_the_place_of_another(tmp_path):
     with pytest.raises(CommandError) as caught:
         write_new(path, "two")
     assert (caught.value.faults[0].what, path.read_text()) == (f"{path} is there already", "one")
+
+
+@pytest.mark.parametrize("name", ["pump.yaml", "pump.YML", "MT-103-B.pdf"])
+def test_a_report_does_not_take_the_place_of_a_spec_or_a_pdf(tmp_path, name):
+    (tmp_path / name).write_text("kept")
+    with pytest.raises(CommandError, match="is there already, and is no report"):
+        spare_sources(tmp_path / name)
+    spare_sources(tmp_path / f"new-{name}")
+    (tmp_path / "report.md").write_text("old")
+    spare_sources(tmp_path / "report.md")

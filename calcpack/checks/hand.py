@@ -18,8 +18,9 @@ from calcpack.formula.parse import parse, parse_condition
 from calcpack.formula.text import printed_quantity, substitute, to_text
 from calcpack.formula.tree import Node, PropertyCall
 from calcpack.solving.cases import solved_row
-from calcpack.solving.program import Instruction, Program, interpolated
+from calcpack.solving.program import Instruction, Program
 from calcpack.solving.solution import Solution
+from calcpack.solving.tables import interpolated
 from calcpack.units import read_quantity, unit
 from calcpack.units.digits import last_place
 

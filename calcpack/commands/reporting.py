@@ -1,6 +1,7 @@
 """A command's faults to the terminal, its result to the exit status."""
 from __future__ import annotations
 
+import shutil
 import sys
 from collections.abc import Callable, Sequence
 from functools import wraps
@@ -21,7 +22,7 @@ def reported(command: Callable[..., int]) -> Callable[..., None]:
         try:
             status = command(*arguments, **options)
         except CalcpackError as error:
-            click.echo(describe(error.faults, _texts(error.faults)), err=True)
+            click.echo(describe(error.faults, _texts(error.faults), width=terminal_width()), err=True)
             status = error.exit_status
         except BrokenPipeError:
             # The reader of our output has gone, as 'head' does; nothing is wrong.
@@ -29,6 +30,11 @@ def reported(command: Callable[..., int]) -> Callable[..., None]:
             status = 0
         sys.exit(status)
     return run
+
+
+def terminal_width() -> int:
+    """Columns that sentences are wrapped to: the terminal's, 80 where there is none, within what reads well."""
+    return min(max(shutil.get_terminal_size().columns, 60), 100)
 
 
 def _texts(faults: Sequence[Fault]) -> dict[str, str]:

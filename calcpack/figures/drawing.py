@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Mapping
 from typing import Any
 
@@ -11,14 +10,17 @@ from calcpack.figures.arrangement import arrangement
 from calcpack.figures.exchanger_profile import exchanger_profile
 from calcpack.figures.figure import Figure
 from calcpack.figures.ladder import ladder_figure
+from calcpack.figures.naming import diagram_ids
 from calcpack.figures.property_diagram import property_diagram
+from calcpack.figures.waterfall import waterfall
 
 NARROWEST, WIDEST = 60.0, 250.0
-LADDER = "ladder"
 
 
-def draw(record: Mapping[str, Any], width_mm: float) -> tuple[Figure, ...]:
-    """The arrangement, then the property diagrams, the exchangers' profiles and the ladder of losses."""
+def draw(
+    record: Mapping[str, Any], width_mm: float, comparison: Mapping[str, Any] | None = None
+) -> tuple[Figure, ...]:
+    """The arrangement, the property diagrams, the exchangers' profiles, the ladder of losses, what moved results."""
     if not NARROWEST <= width_mm <= WIDEST:
         raise CommandError(
             Fault(
@@ -28,29 +30,10 @@ def draw(record: Mapping[str, Any], width_mm: float) -> tuple[Figure, ...]:
             )
         )
     drawn = [arrangement(record)] if record["sketch"]["nodes"] else []
-    names = _Names()
-    drawn += [property_diagram(record, one, names.fresh(one["kind"]), width_mm) for one in record["diagrams"]]
-    drawn += [
-        exchanger_profile(record, one, names.fresh(f"profile {one['title']}"), width_mm)
-        for one in record["exchangers"]
-    ]
+    names = iter(diagram_ids(record))
+    drawn += [property_diagram(record, one, next(names), width_mm) for one in record["diagrams"]]
+    drawn += [exchanger_profile(record, one, next(names), width_mm) for one in record["exchangers"]]
     if record.get("ladder"):
-        drawn.append(ladder_figure(record["ladder"], names.fresh(LADDER)))
-    return tuple(drawn)
-
-
-class _Names:
-    """Ids fit for file names, each given out once."""
-
-    def __init__(self) -> None:
-        self.given = {"arrangement"}
-
-    def fresh(self, words: str) -> str:
-        # 'p-V' and 'p-v' are two diagrams, also on disks that fold case.
-        plain = re.sub(r"[^a-z0-9]+", "-", words.casefold()).strip("-") or "figure"
-        name, count = plain, 1
-        while name in self.given:
-            count += 1
-            name = f"{plain}-{count}"
-        self.given.add(name)
-        return name
+        drawn.append(ladder_figure(record["ladder"], next(names)))
+    moved = waterfall(comparison)
+    return (*drawn, moved) if moved else tuple(drawn)

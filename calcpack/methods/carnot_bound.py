@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from calcpack.errors import Fault, SpecError
 from calcpack.methods import ladders
 from calcpack.methods.method import Method, Option, Role
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.streams import Stream, entropic_mean, inlet_state, line, stream
 from calcpack.plan.facts import Again, Bound, Box, Equal, Link, Sketch, StreamLine
 from calcpack.plan.plan import Plan, Section
@@ -88,22 +89,30 @@ def _bound(plan: Plan, hot: str, cold: str) -> None:
     match plan.options["machine"]:
         case "engine":
             section.formula("eta_rev", f"1 - {cold} / {hot}", "Efficiency of the reversible engine", reference=CARNOT)
-            section.formula("W_dot_rev", "eta_rev * Q_dot_h", "Reversible power", "kW")
-            section.formula("Q_dot_c", "Q_dot_h - W_dot_rev", "Heat given at the cold side", "kW")
+            section.formula("W_dot_rev", "eta_rev * Q_dot_h", "Reversible power", "kW",
+                            reference="definition of efficiency, solved for the power")
+            section.formula("Q_dot_c", "Q_dot_h - W_dot_rev", "Heat given at the cold side", "kW",
+                            reference=grounds.FIRST_LAW_OF_CYCLE)
         case "heat-pump":
             section.formula("COP_rev", f"{hot} / ({hot} - {cold})",
                             "Coefficient of performance of the reversible heat pump",
                             reference=CARNOT)
-            section.formula("W_dot_rev", "Q_dot_h / COP_rev", "Least power for this heat", "kW")
-            section.formula("Q_dot_c", "Q_dot_h - W_dot_rev", "Heat taken at the cold side", "kW")
+            section.formula("W_dot_rev", "Q_dot_h / COP_rev", "Least power for this heat", "kW",
+                            reference="definition of the coefficient of performance, solved for the power")
+            section.formula("Q_dot_c", "Q_dot_h - W_dot_rev", "Heat taken at the cold side", "kW",
+                            reference=grounds.FIRST_LAW_OF_CYCLE)
         case _:
             section.formula("COP_rev", f"{cold} / ({hot} - {cold})",
                             "Coefficient of performance of the reversible refrigerator", reference=CARNOT)
-            section.formula("W_dot_rev", "Q_dot_c / COP_rev", "Least power for this cold", "kW")
-            section.formula("Q_dot_h", "Q_dot_c + W_dot_rev", "Heat given at the hot side", "kW")
-    section.formula("S_dot_h", f"Q_dot_h / {hot}", "Entropy flow with the heat at the hot side", "kW/K")
+            section.formula("W_dot_rev", "Q_dot_c / COP_rev", "Least power for this cold", "kW",
+                            reference="definition of the coefficient of performance, solved for the power")
+            section.formula("Q_dot_h", "Q_dot_c + W_dot_rev", "Heat given at the hot side", "kW",
+                            reference=grounds.FIRST_LAW_OF_CYCLE)
+    section.formula("S_dot_h", f"Q_dot_h / {hot}", "Entropy flow with the heat at the hot side", "kW/K",
+                    reference=grounds.ENTROPY_OF_HEAT)
     section.formula("S_dot_c", f"Q_dot_c / {cold}", "Entropy flow with the heat at the cold side", "kW/K",
-                    note="equal to that at the hot side: the machine makes no entropy")
+                    note="equal to that at the hot side: the machine makes no entropy",
+                    reference=grounds.ENTROPY_OF_HEAT)
     ladders.carnot(plan, hot, cold)
     plan.facts.equals.append(Equal("S_dot_h", "S_dot_c", "a reversible machine makes no entropy", 1e-9))
     if plan.options["between"] == "streams":
@@ -136,17 +145,19 @@ def _dead_state(plan: Plan) -> None:
                           f"Specific {name} of the source {word}")
     section = plan.section("Maximum work")
     section.formula("Q_dot_h", "m_dot_source * (h_source_in - h_source_0)",
-                    "Heat given up down to the dead state", "kW")
+                    "Heat given up down to the dead state", "kW", reference=grounds.HEAT_OF_FLOW)
     section.formula("e_source", "(h_source_in - h_source_0) - T_0 * (s_source_in - s_source_0)",
                     "Specific flow exergy of the source", "kJ/kg",
                     reference="flow exergy without kinetic, potential and chemical parts")
-    section.formula("W_dot_rev", "m_dot_source * e_source", "Maximum power", "kW")
-    section.formula("Q_dot_c", "Q_dot_h - W_dot_rev", "Heat given at the dead state", "kW")
+    section.formula("W_dot_rev", "m_dot_source * e_source", "Maximum power", "kW", reference=grounds.EXERGY_OF_FLOW)
+    section.formula("Q_dot_c", "Q_dot_h - W_dot_rev", "Heat given at the dead state", "kW",
+                    reference=grounds.FIRST_LAW_OF_CYCLE)
     second = plan.section("The same by the entropic mean temperature")
     second.formula("T_m_source", "(h_source_in - h_source_0) / (s_source_in - s_source_0)",
-                   "Entropic mean temperature of the heat given up", "degC")
+                   "Entropic mean temperature of the heat given up", "degC", reference=grounds.MEAN_TEMPERATURE)
     second.formula("eta_rev", "1 - T_0 / T_m_source", "Efficiency of the reversible engine", reference=CARNOT)
-    second.formula("W_dot_rev_2", "eta_rev * Q_dot_h", "Maximum power, second way", "kW")
+    second.formula("W_dot_rev_2", "eta_rev * Q_dot_h", "Maximum power, second way", "kW",
+                   reference="definition of efficiency, solved for the power")
     plan.facts.streams.append(StreamLine("Source, cooled to the dead state", "source", "m_dot_source",
                                          "T_source_in", "T_0",
                                          "p_source", "h_source_in", "h_source_0", "Q_dot_h"))
@@ -163,16 +174,22 @@ def _real(plan: Plan) -> None:
     ladders.bound(plan, engine=engine)
     section = plan.section("A real machine against the bound")
     if engine:
-        section.formula("eta_real", "W_dot_real / Q_dot_h", "Efficiency of the real machine")
-        section.formula("g_rev", "W_dot_real / W_dot_rev", "Share of the bound that it reaches")
-        section.formula("W_dot_lost", "W_dot_rev - W_dot_real", "Power given away", "kW")
+        section.formula("eta_real", "W_dot_real / Q_dot_h", "Efficiency of the real machine",
+                        reference=grounds.EFFICIENCY)
+        section.formula("g_rev", "W_dot_real / W_dot_rev", "Share of the bound that it reaches",
+                        reference=grounds.SHARE_OF_BOUND)
+        section.formula("W_dot_lost", "W_dot_rev - W_dot_real", "Power given away", "kW",
+                        reference="derived: greatest power less power reached")
         plan.facts.bounds.append(Bound(
             "W_dot_real", "W_dot_rev", "the real engine gives no more than the reversible one"))
         return
     heat = "Q_dot_h" if plan.options["machine"] == "heat-pump" else "Q_dot_c"
-    section.formula("COP_real", f"{heat} / W_dot_real", "Coefficient of performance of the real machine")
-    section.formula("g_rev", "COP_real / COP_rev", "Share of the bound that it reaches")
-    section.formula("W_dot_lost", "W_dot_real - W_dot_rev", "Power drawn above the least", "kW")
+    section.formula("COP_real", f"{heat} / W_dot_real", "Coefficient of performance of the real machine",
+                    reference=grounds.COP)
+    section.formula("g_rev", "COP_real / COP_rev", "Share of the bound that it reaches",
+                    reference=grounds.SHARE_OF_BOUND)
+    section.formula("W_dot_lost", "W_dot_real - W_dot_rev", "Power drawn above the least", "kW",
+                    reference="derived: power drawn less least power")
     plan.facts.bounds.append(Bound("COP_real", "COP_rev", "the real machine does no better than the reversible one"))
 
 

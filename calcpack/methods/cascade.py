@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from calcpack.methods import vapour_parts as parts
 from calcpack.methods.cascade_facts import facts
 from calcpack.methods.method import Method, Option, Role
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.coupled import Coupled, Side, coupled_profile
 from calcpack.plan.equipment.exchanger import Zone, conductance, require_pinch
 from calcpack.plan.equipment.machines import compressor, saturation, state, valve
@@ -83,9 +84,10 @@ def _levels(plan: Plan, source: Stream | None, sink: Stream | None) -> None:
         section.property("T_crit_low", "T_crit(wf)", "Critical temperature of the low circuit's refrigerant")
         section.optimum("T_cl", "k_circuits", ("T_e + dT_cas + 5 K", "min(T_c - 2 K, T_crit_low - 2 K)"),
                         "Condensing temperature of the low circuit of the highest coefficient of performance",
-                        "degC")
+                        "degC", reference=grounds.BEST_COP)
     section.property("p_cl", "p(wf, T=T_cl, x=1)", "Condensing pressure of the low circuit (dew point)")
-    section.formula("T_eh", "T_cl - dT_cas", "Evaporating temperature of the high circuit (dew point)", "degC")
+    section.formula("T_eh", "T_cl - dT_cas", "Evaporating temperature of the high circuit (dew point)", "degC",
+                    reference="definition of the approach in the cascade exchanger")
     section.property("p_eh", f"p({HIGH}, T=T_eh, x=1)", "Evaporating pressure of the high circuit (dew point)")
 
 
@@ -93,7 +95,8 @@ def _suction(plan: Plan, section: Section, number: str, fluid: str, tags: tuple[
     """State at a compressor's inlet; ``tags`` are those of its level and of its superheat."""
     level, superheat = tags
     if plan.options["suction"] == "superheated":
-        section.formula(f"T_{number}", f"T_{level} + {superheat}", f"Temperature {where}", "degC")
+        section.formula(f"T_{number}", f"T_{level} + {superheat}", f"Temperature {where}", "degC",
+                        reference=grounds.SUPERHEAT)
         state(section, number, fluid, where, p=f"p_{level}", T=f"T_{number}")
     else:
         state(section, number, fluid, where, p=f"p_{level}", x="1")
@@ -114,7 +117,8 @@ def _high_circuit(plan: Plan, section: Section) -> None:
     compressor(section, HIGH, "5", "6", "p_c", "f_loss", "eta_high", "w_high", "high compressor")
     section.property("T_bub", f"T({HIGH}, p=p_c, x=0)", "Bubble-point temperature at the condensing pressure")
     if plan.options["liquid"] == "subcooled":
-        section.formula("T_7", "T_bub - dT_sc", "Temperature at the condenser outlet", "degC")
+        section.formula("T_7", "T_bub - dT_sc", "Temperature at the condenser outlet", "degC",
+                        reference=grounds.SUBCOOLING)
         state(section, "7", HIGH, "at the condenser outlet", p="p_c", T="T_7")
     else:
         state(section, "7", HIGH, "at the condenser outlet", p="p_c", x="0")
@@ -129,7 +133,8 @@ def _high_circuit(plan: Plan, section: Section) -> None:
 
 def _duty(plan: Plan, section: Section) -> None:
     parts.duties(plan, section, "circuit", sink="h_6 - h_7", source="h_1 - h_4")
-    section.formula("Q_dot_cas", "m_dot_low * (h_2 - h_3)", "Heat exchanged in the cascade exchanger", "kW")
+    section.formula("Q_dot_cas", "m_dot_low * (h_2 - h_3)", "Heat exchanged in the cascade exchanger", "kW",
+                    reference=grounds.HEAT_OF_FLOW)
 
 
 def _cascade_exchanger(plan: Plan) -> None:
@@ -156,17 +161,19 @@ def _power(plan: Plan) -> None:
     section = plan.section("Power and coefficient of performance")
     for tag in ("low", "high"):
         section.formula(f"W_dot_{tag}", f"m_dot_{tag} * w_{tag}", f"Power at the shaft of the {tag} circuit",
-                        "kW")
-    section.formula("W_dot_shaft", "W_dot_low + W_dot_high", "Power at both shafts", "kW")
+                        "kW", reference=grounds.POWER_OF_FLOW)
+    section.formula("W_dot_shaft", "W_dot_low + W_dot_high", "Power at both shafts", "kW", reference=grounds.SUM)
     for tag in ("low", "high"):
         section.formula(f"Q_dot_loss_{tag}", f"f_loss * W_dot_{tag}",
                         f"Heat lost by the {tag} circuit's compressor",
-                        "kW")
+                        "kW", reference=grounds.LOST_HEAT)
     parts.electrical(plan, section)
-    section.formula("r_p_low", "p_cl / p_e", "Pressure ratio of the low circuit")
-    section.formula("r_p_high", "p_c / p_eh", "Pressure ratio of the high circuit")
-    section.formula("V_dot_1", "m_dot_low / rho_1", "Volume flow at the low compressor's inlet", "m3/h")
-    section.formula("V_dot_5", "m_dot_high / rho_5", "Volume flow at the high compressor's inlet", "m3/h")
+    section.formula("r_p_low", "p_cl / p_e", "Pressure ratio of the low circuit", reference=grounds.PRESSURE_RATIO)
+    section.formula("r_p_high", "p_c / p_eh", "Pressure ratio of the high circuit", reference=grounds.PRESSURE_RATIO)
+    section.formula("V_dot_1", "m_dot_low / rho_1", "Volume flow at the low compressor's inlet", "m3/h",
+                    reference=grounds.VOLUME_FLOW)
+    section.formula("V_dot_5", "m_dot_high / rho_5", "Volume flow at the high compressor's inlet", "m3/h",
+                    reference=grounds.VOLUME_FLOW)
 
 
 def _roles(options: Mapping[str, str]) -> tuple[Role, ...]:

@@ -3,6 +3,7 @@ from __future__ import annotations
 
 from calcpack.methods import ladders
 from calcpack.methods.combined_parts import FEED, STEAM, levels_of
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.exchanger import Exchanger, Zone, conductance, profile, require_pinch
 from calcpack.plan.equipment.streams import Stream, balance, line
 from calcpack.plan.facts import Again, Box, Diagram, Flow, Link, Path, Sketch, StatePoint, Volume
@@ -18,7 +19,8 @@ def condenser(plan: Plan, sink: Stream) -> None:
     """Cooling water, temperature profile and conductance of the condenser."""
     section = plan.section("Condenser: balance and profile")
     section.property("h_g_c", "h(wf, p=p_c, x=1)", "Enthalpy of the dry vapour at the condensing pressure")
-    section.formula("h_cv", "min(h_8, h_g_c)", "Enthalpy at which condensation begins", "kJ/kg")
+    section.formula("h_cv", "min(h_8, h_g_c)", "Enthalpy at which condensation begins", "kJ/kg",
+                    reference=grounds.ONSET)
     section.property("T_cv", "T(wf, p=p_c, h=h_cv)", "Temperature at which condensation begins")
     balance(section, sink, "Q_dot_c")
     it = Exchanger("Condenser", "c", "wf", "p_c", exhaust_flow(plan), "Q_dot_c", sink, (

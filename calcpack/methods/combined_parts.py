@@ -1,6 +1,7 @@
 """The parts of a combined plant's plan: gas turbine, steam states, steam generator, turbine, powers, bound."""
 from __future__ import annotations
 
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.exchanger import Exchanger, Zone, profile, require_pinch
 from calcpack.plan.equipment.machines import pump, saturation, state
 from calcpack.plan.equipment.streams import Stream, balance, entropic_mean
@@ -33,12 +34,13 @@ def gas_turbine(plan: Plan, gas: Stream) -> None:
         return
     section = plan.section("Gas turbine")
     state(section, "g1", "gas", "at the compressor inlet", p="p_gas", T="T_g1")
-    section.formula("p_g2", "r_p * p_gas", "Pressure behind the compressor", "bar")
+    section.formula("p_g2", "r_p * p_gas", "Pressure behind the compressor", "bar", reference=grounds.HIGH_PRESSURE)
     section.property("h_g2s", "h(gas, p=p_g2, s=s_g1)", "Enthalpy after isentropic compression")
     section.formula("h_g2", "h_g1 + (h_g2s - h_g1) / eta_c", "Specific enthalpy at the compressor outlet", "kJ/kg",
                     reference="isentropic efficiency: isentropic rise of enthalpy over rise")
     state(section, "g2", "gas", "at the compressor outlet", p="p_g2", h="h_g2")
-    section.formula("p_g3", "p_g2 * (1 - f_p_cc)", "Pressure at the gas turbine's inlet", "bar")
+    section.formula("p_g3", "p_g2 * (1 - f_p_cc)", "Pressure at the gas turbine's inlet", "bar",
+                    reference=grounds.LOSS_OF_PRESSURE)
     state(section, "g3", "gas", "at the gas turbine's inlet", p="p_g3", T="T_g3")
     plan.demand("h_g3 > h_g2", "the compressed gas is hotter than the turbine inlet", "raise T_g3 or lower r_p")
     section.property("h_g4s", "h(gas, p=p_gas, s=s_g3)", "Enthalpy after isentropic expansion")
@@ -51,7 +53,7 @@ def gas_turbine(plan: Plan, gas: Stream) -> None:
     section.property("s_gas_in", "s(gas, p=p_gas, T=T_gas_in)", "Specific entropy of the exhaust")
     section.formula("W_dot_gt", "m_dot_gas * ((h_g3 - h_gas_in) - (h_g2 - h_g1))",
                     "Shaft power of the gas turbine, its compressor taken off",
-                    "kW")
+                    "kW", reference="first law at steady flow, adiabatic machines: turbine less compressor")
     section.formula("Q_dot_fuel", "m_dot_gas * (h_g3 - h_g2)", "Heat of the fuel", "kW",
                     reference="air-standard: the fuel counts as heat, the gas keeps its composition")
 
@@ -95,7 +97,7 @@ def steam_generator(plan: Plan, gas: Stream) -> None:
     for tag in levels_of(plan):
         plan.demand(f"m_dot_{tag} > 0 kg/s", f"no {word(plan, tag)}steam can be made",
                     "take a smaller pinch or a lower pressure")
-    section.formula("Q_dot_hr", heat, "Heat taken from the gas", "kW")
+    section.formula("Q_dot_hr", heat, "Heat taken from the gas", "kW", reference=grounds.HEAT_OF_FLOW)
     balance(section, gas, "Q_dot_hr")
     _ends(plan, section)
     if plan.options["pressures"] == "1":
@@ -104,7 +106,8 @@ def steam_generator(plan: Plan, gas: Stream) -> None:
 
 def _high_pressure(plan: Plan, section: Section) -> None:
     which = word(plan, "hp")
-    section.formula("T_pp_hp", "T_s_hp + dT_pinch_hp", f"Gas behind the {which}evaporator, at the pinch", "degC")
+    section.formula("T_pp_hp", "T_s_hp + dT_pinch_hp", f"Gas behind the {which}evaporator, at the pinch", "degC",
+                    reference=grounds.PINCH_OF_STEAM)
     section.property("h_pp_hp", "h(gas, p=p_gas, T=T_pp_hp)", f"Enthalpy of the gas behind the {which}evaporator")
     section.formula("T_ec_hp", "T_s_hp - dT_app_hp", f"Water at the {which}economiser's outlet", "degC",
                     reference="approach: saturation temperature less that of the water entering the drum")
@@ -117,7 +120,8 @@ def _high_pressure(plan: Plan, section: Section) -> None:
 
 def _low_pressure(section: Section) -> None:
     """Between the two pinches the gas heats high-pressure water and makes low-pressure steam."""
-    section.formula("T_pp_lp", "T_s_lp + dT_pinch_lp", "Gas behind the low-pressure evaporator, at the pinch", "degC")
+    section.formula("T_pp_lp", "T_s_lp + dT_pinch_lp", "Gas behind the low-pressure evaporator, at the pinch", "degC",
+                    reference=grounds.PINCH_OF_STEAM)
     section.property("h_pp_lp", "h(gas, p=p_gas, T=T_pp_lp)", "Enthalpy of the gas behind the low-pressure evaporator")
     section.formula("T_ec_lp", "T_s_lp - dT_app_lp", "Water at the outlet of the cold economisers", "degC",
                     reference="approach: saturation temperature less that of the water entering the drum")
@@ -130,16 +134,20 @@ def _low_pressure(section: Section) -> None:
 
 
 def _ends(plan: Plan, section: Section) -> None:
-    section.formula("dT_hot", "T_gas_in - T_hp", "Temperature difference at the hot end", "K")
-    section.formula("dT_cold", "T_gas_out - T_2", "Temperature difference at the cold end", "K")
+    section.formula("dT_hot", "T_gas_in - T_hp", "Temperature difference at the hot end", "K",
+                    reference=grounds.TWO_SIDES)
+    section.formula("dT_cold", "T_gas_out - T_2", "Temperature difference at the cold end", "K",
+                    reference=grounds.TWO_SIDES)
     plan.demand("dT_cold > 0 K", "the temperatures cross at the cold end of the steam generator",
                 "take a greater pinch, or a higher stack temperature")
     if plan.options["pressures"] == "2":
         section.formula("dT_lp", "T_pp_hp - T_lp",
-                        "Temperature difference at the low-pressure superheater's hot end", "K")
+                        "Temperature difference at the low-pressure superheater's hot end", "K",
+                        reference=grounds.TWO_SIDES)
         plan.demand("dT_lp > 0 K", "the low-pressure steam is hotter than the gas that heats it", "lower T_lp")
     section.formula("eta_hr", "(h_gas_in - h_gas_out) / (h_gas_in - h_gas_0)",
-                    "Heat taken over that down to the dead state")
+                    "Heat taken over that down to the dead state",
+                    reference="heat taken over heat down to the dead state, equal gas flow")
 
 
 def _profile(plan: Plan, section: Section, gas: Stream) -> None:
@@ -171,7 +179,7 @@ def steam_turbine(plan: Plan) -> None:
     if two:
         _expansion(section, "4", "6", "p_lp", first, "high-pressure turbine")
         flow = section.formula("m_dot_s", "m_dot_hp + m_dot_lp", "Mass flow of steam in the low-pressure turbine",
-                               "kg/s")
+                               "kg/s", reference=grounds.MASS)
         section.formula("h_7", "(m_dot_hp * h_6 + m_dot_lp * h_5) / m_dot_s", "Specific enthalpy of the mixed steam",
                         "kJ/kg",
                         reference="energy balance of the mixing")
@@ -180,13 +188,16 @@ def steam_turbine(plan: Plan) -> None:
     _expansion(section, inlet, "8", "p_c", second, "low-pressure turbine" if two else "turbine")
     section.property("x_ex", "x_eq(wf, p=p_c, h=h_8)", "Dryness at the exhaust; above 1 it is superheated")
     work = "m_dot_hp * (h_4 - h_6) + m_dot_s * (h_7 - h_8)" if two else "m_dot_hp * (h_4 - h_8)"
-    section.formula("W_dot_st", work, "Shaft power of the steam turbine", "kW")
+    section.formula("W_dot_st", work, "Shaft power of the steam turbine", "kW",
+                    reference="first law at steady flow, adiabatic: mass flow times fall of enthalpy")
     pumps = "m_dot_hp * w_p_hp + m_dot_lp * w_p_lp" if two else "m_dot_hp * w_p"
-    section.formula("W_dot_p", pumps, "Shaft power of the feed pumps" if two else "Shaft power of the feed pump", "kW")
-    section.formula("Q_dot_c", f"{flow} * (h_8 - h_1)", "Heat given up in the condenser", "kW")
+    section.formula("W_dot_p", pumps, "Shaft power of the feed pumps" if two else "Shaft power of the feed pump", "kW",
+                    reference=grounds.POWER_OF_FLOW)
+    section.formula("Q_dot_c", f"{flow} * (h_8 - h_1)", "Heat given up in the condenser", "kW",
+                    reference=grounds.HEAT_OF_FLOW)
     section.formula("Q_dot_out_sum", "Q_dot_c + W_dot_st - W_dot_p",
                     "Heat and work that leave the steam cycle, for check", "kW",
-                    note="must equal the heat taken from the gas")
+                    note="must equal the heat taken from the gas", reference=grounds.WHOLE)
     plan.facts.equals.append(Equal("Q_dot_hr", "Q_dot_out_sum",
                                    "heat taken equals heat and work that leave the steam cycle", 1e-9))
 
@@ -204,17 +215,24 @@ def _expansion(section: Section, inlet: str, outlet: str, pressure: str, eta: st
 def power(plan: Plan) -> None:
     """Net powers of the steam and gas sides and of the plant, and its efficiency where the fuel is known."""
     section = plan.section("Powers and efficiency")
-    section.formula("W_dot_snet", "W_dot_st * eta_gen - W_dot_p / eta_pm", "Electrical power of the steam side", "kW")
+    section.formula("W_dot_snet", "W_dot_st * eta_gen - W_dot_p / eta_pm", "Electrical power of the steam side", "kW",
+                    reference=grounds.NET_POWER)
     plan.demand("W_dot_snet > 0 kW", "the steam side gives no power", "pumps draw all that the steam turbine makes")
     if plan.options["gas"] == "cycle":
-        section.formula("W_dot_gnet", "W_dot_gt * eta_gen_g", "Electrical power of the gas turbine", "kW")
-        section.formula("W_dot_net", "W_dot_gnet + W_dot_snet - W_dot_aux", "Net electrical power of the plant", "kW")
-        section.formula("eta_cc", "W_dot_net / Q_dot_fuel", "Efficiency of the combined plant")
-        section.formula("eta_g", "W_dot_gnet / Q_dot_fuel", "Efficiency of the gas turbine alone")
+        section.formula("W_dot_gnet", "W_dot_gt * eta_gen_g", "Electrical power of the gas turbine", "kW",
+                        reference=grounds.GENERATOR)
+        section.formula("W_dot_net", "W_dot_gnet + W_dot_snet - W_dot_aux", "Net electrical power of the plant", "kW",
+                        reference=grounds.NET_POWER)
+        section.formula("eta_cc", "W_dot_net / Q_dot_fuel", "Efficiency of the combined plant",
+                        reference=grounds.EFFICIENCY)
+        section.formula("eta_g", "W_dot_gnet / Q_dot_fuel", "Efficiency of the gas turbine alone",
+                        reference=grounds.EFFICIENCY)
     else:
-        section.formula("W_dot_net", "W_dot_snet - W_dot_aux", "Net electrical power of the plant", "kW")
+        section.formula("W_dot_net", "W_dot_snet - W_dot_aux", "Net electrical power of the plant", "kW",
+                        reference=grounds.NET_POWER)
     plan.demand("W_dot_net > 0 kW", "the net power is not above zero", "pumps and auxiliaries draw all that is made")
-    section.formula("eta_s", "W_dot_snet / Q_dot_hr", "Efficiency of the steam side on the heat taken from the gas")
+    section.formula("eta_s", "W_dot_snet / Q_dot_hr", "Efficiency of the steam side on the heat taken from the gas",
+                    reference=grounds.EFFICIENCY)
 
 
 def bound(plan: Plan, gas: Stream) -> None:
@@ -223,12 +241,16 @@ def bound(plan: Plan, gas: Stream) -> None:
     section.formula("e_gas", "(h_gas_in - h_gas_0) - T_0 * (s_gas_in - s_gas_0)",
                     "Specific flow exergy of the gas at the inlet", "kJ/kg",
                     reference="flow exergy without kinetic, potential and chemical parts, at the gas's pressure")
-    section.formula("W_dot_rev", "m_dot_gas * e_gas", "Reversible power of the gas cooled to the dead state", "kW")
+    section.formula("W_dot_rev", "m_dot_gas * e_gas", "Reversible power of the gas cooled to the dead state", "kW",
+                    reference=grounds.EXERGY_OF_FLOW)
     section.formula("E_dot_stack", "m_dot_gas * ((h_gas_out - h_gas_0) - T_0 * (s_gas_out - s_gas_0))",
-                    "Exergy that leaves by the stack", "kW")
-    section.formula("W_dot_rev_taken", "W_dot_rev - E_dot_stack", "Reversible power of the heat that is taken", "kW")
+                    "Exergy that leaves by the stack", "kW",
+                    reference="flow exergy without kinetic, potential and chemical parts")
+    section.formula("W_dot_rev_taken", "W_dot_rev - E_dot_stack", "Reversible power of the heat that is taken", "kW",
+                    reference="exergy balance of the gas")
     section.formula("eta_ex", "W_dot_snet / W_dot_rev",
-                    "Exergetic efficiency: power of the steam side over the exergy of the exhaust")
+                    "Exergetic efficiency: power of the steam side over the exergy of the exhaust",
+                    reference="definition of the exergetic efficiency: power over exergy supplied")
     entropic_mean(section, gas, "T_m_gas")
     plan.demand("T_0 <= T_c", "the dead state is warmer than the condenser", "lower T_0, or raise the condensing level")
     section.formula("eta_rev", "1 - T_0 / T_m_gas", "Efficiency of a reversible engine on the heat taken",
@@ -237,5 +259,6 @@ def bound(plan: Plan, gas: Stream) -> None:
                                 "the steam side stays below the reversible power of the heat taken"),
                           Bound("eta_s", "eta_rev", "the steam side's efficiency stays below the reversible one")]
     if plan.options["gas"] == "cycle":
-        section.formula("eta_C", "1 - T_0 / T_g3", "Carnot's efficiency between the turbine inlet and the dead state")
+        section.formula("eta_C", "1 - T_0 / T_g3", "Carnot's efficiency between the turbine inlet and the dead state",
+                        reference=grounds.CARNOT)
         plan.facts.bounds.append(Bound("eta_cc", "eta_C", "the combined plant stays below Carnot's efficiency"))

@@ -5,6 +5,7 @@ from collections.abc import Mapping
 
 from calcpack.methods.gas_engine_parts import engine_sketch
 from calcpack.methods.method import Method, Option
+from calcpack.plan.equipment import grounds
 from calcpack.plan.facts import Again, Bound, Equal, Volume
 from calcpack.plan.plan import Plan, Section
 
@@ -31,7 +32,8 @@ def lay(plan: Plan) -> None:
                     "Efficiency of the endoreversible engine at maximum power: an estimate",
                     reference=SOURCE,
                     note="no bound: an engine run for efficiency rather than power can pass it")
-    section.formula("g_CA", "eta_CA / eta_C", "Share of Carnot's efficiency at maximum power")
+    section.formula("g_CA", "eta_CA / eta_C", "Share of Carnot's efficiency at maximum power",
+                    reference=grounds.SHARE_OF_CARNOT)
     plan.facts.bounds.append(Bound("eta_CA", "eta_C", "the estimate stays below Carnot's efficiency"))
     if plan.options["conductances"] == "given":
         _at_maximum_power(plan)
@@ -48,18 +50,21 @@ def _at_maximum_power(plan: Plan) -> None:
     section = plan.section("The engine at maximum power")
     section.formula("T_direct", "(UA_h * T_h + UA_c * T_c) / (UA_h + UA_c)",
                     "Temperature between the exchangers if heat ran straight through", "degC",
-                    note="here the power is zero, as it is where the engine takes no heat")
+                    note="here the power is zero, as it is where the engine takes no heat",
+                    reference="energy balance without work: heat from the source equals heat to the sink")
     section.optimum("T_hw", "W_dot", ("T_direct", "T_h"),
                     "Upper temperature of the engine, for the greatest power",
-                    "degC")
+                    "degC", reference="condition of the greatest power, found by search between the bounds")
     section.formula("Q_dot_h", "UA_h * (T_h - T_hw)", "Heat taken from the source", "kW",
                     reference="heat transfer proportional to the temperature difference")
     section.formula("S_dot", "Q_dot_h / T_hw", "Entropy that passes through the engine", "kW/K",
                     reference="the engine itself is reversible")
     section.formula("T_cw", "T_c / (1 - S_dot / UA_c)", "Lower temperature of the engine", "degC",
-                    note="at which the entropy passes on: UA_c (T_cw - T_c) = T_cw S_dot")
-    section.formula("Q_dot_c", "UA_c * (T_cw - T_c)", "Heat given to the sink", "kW")
-    section.formula("W_dot", "Q_dot_h - Q_dot_c", "Power", "kW")
+                    note="at which the entropy passes on: UA_c (T_cw - T_c) = T_cw S_dot",
+                    reference="entropy balance of the reversible engine")
+    section.formula("Q_dot_c", "UA_c * (T_cw - T_c)", "Heat given to the sink", "kW",
+                    reference="heat transfer proportional to the temperature difference")
+    section.formula("W_dot", "Q_dot_h - Q_dot_c", "Power", "kW", reference=grounds.FIRST_LAW_OF_CYCLE)
     plan.close("T_hw")
     _closed_forms(section)
     plan.facts.volumes.append(Volume("engine and both exchangers", work_out=("W_dot",),
@@ -68,12 +73,15 @@ def _at_maximum_power(plan: Plan) -> None:
 
 
 def _closed_forms(section: Section) -> None:
-    section.formula("eta_W", "W_dot / Q_dot_h", "Efficiency at the greatest power, as found")
-    section.formula("UA", "UA_h * UA_c / (UA_h + UA_c)", "Conductance of both exchangers in series", "kW/K")
+    section.formula("eta_W", "W_dot / Q_dot_h", "Efficiency at the greatest power, as found",
+                    reference=grounds.EFFICIENCY)
+    section.formula("UA", "UA_h * UA_c / (UA_h + UA_c)", "Conductance of both exchangers in series", "kW/K",
+                    reference="resistances in series add")
     section.formula("W_dot_most", "UA * (sqrt(T_h) - sqrt(T_c))^2", "Greatest power by its closed form", "kW",
                     reference="both exchangers in contact all the time")
     section.formula("S_dot_gen", "Q_dot_c / T_c - Q_dot_h / T_h",
-                    "Entropy generated, all of it in the exchangers", "kW/K")
+                    "Entropy generated, all of it in the exchangers", "kW/K",
+                    reference="second law: entropy given to the sink less entropy taken from the source")
     section.plan.facts.equals += [
         Equal("W_dot", "W_dot_most", "greatest power by search and by its closed form", 1e-8),
         # The power is flat at its greatest, so that the temperatures there are found less finely than the power.
@@ -84,9 +92,10 @@ def _observed(plan: Plan) -> None:
     plan.input("eta_obs", "number", "Observed efficiency of the plant", "0.36", low="0", low_open=True,
                high="1")
     section = plan.section("The plant observed")
-    section.formula("g_obs", "eta_obs / eta_C", "Share of Carnot's efficiency that the plant reaches")
+    section.formula("g_obs", "eta_obs / eta_C", "Share of Carnot's efficiency that the plant reaches",
+                    reference=grounds.SHARE_OF_CARNOT)
     section.formula("r_obs", "eta_obs / eta_CA", "Observed efficiency over the estimate",
-                    note="may lie above 1: the estimate is no bound")
+                    note="may lie above 1: the estimate is no bound", reference="derived: observed value over estimate")
     plan.facts.bounds.append(Bound("eta_obs", "eta_C", "no plant passes Carnot's efficiency"))
     plan.facts.again.append(Again("g_obs", "r_obs * g_CA", "from the two other shares"))
 

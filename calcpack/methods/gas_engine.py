@@ -8,6 +8,7 @@ from calcpack.methods import gas_engine_parts as parts
 from calcpack.methods.gas_engine_parts import CYCLES, Cycle
 from calcpack.methods.method import Method, Option, Role
 from calcpack.plan.equipment import closed_gas as closed
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.gas import GAS_VALUES, gas_inputs
 from calcpack.plan.plan import Plan
 
@@ -84,17 +85,18 @@ def _size(plan: Plan) -> None:
         return
     if size == "cylinder":
         section = plan.section("Work of one cycle")
-        section.formula("m", "V_1 / v_1", "Mass of gas", "kg")
-        section.formula("W_net", "m * w_net", "Net work of one cycle", "kJ")
-        section.formula("Q_in", "m * q_in", "Heat taken in one cycle", "kJ")
+        section.formula("m", "V_1 / v_1", "Mass of gas", "kg",
+                        reference="definition of the specific volume: volume over mass")
+        section.formula("W_net", "m * w_net", "Net work of one cycle", "kJ", reference="mass times work of a kilogram")
+        section.formula("Q_in", "m * q_in", "Heat taken in one cycle", "kJ", reference="mass times heat of a kilogram")
         return
     section = plan.section("Power")
     section.formula("f_c", "n" if size == "two-stroke" else "n / 2", "Cycles in a unit of time", "1/s",
                     reference=f"{size} engine")
     section.formula("W_dot", "p_m * V_d * f_c", "Power of the gas on the pistons", "kW",
                     reference="mean effective pressure times swept volume, each cycle")
-    section.formula("m_dot", "W_dot / w_net", "Flow of gas through the cycle", "kg/s")
-    section.formula("Q_dot_in", "m_dot * q_in", "Heat flow taken", "kW")
+    section.formula("m_dot", "W_dot / w_net", "Flow of gas through the cycle", "kg/s", reference=grounds.FLOW_FOR_WORK)
+    section.formula("Q_dot_in", "m_dot * q_in", "Heat flow taken", "kW", reference=grounds.HEAT_OF_SPECIFIC)
 
 
 def _roles(options: Mapping[str, str]) -> tuple[Role, ...]:

@@ -4,6 +4,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from calcpack.plan.equipment import closed_gas as closed
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.gas import Gas
 from calcpack.plan.facts import Again, Bound, Box, Diagram, Equal, Link, Path, Sketch, StatePoint, Volume
 from calcpack.plan.plan import Plan, Section
@@ -81,7 +82,8 @@ def corners(plan: Plan, gas: Gas, cycle: Cycle) -> None:
     closed.volume(section, "1")
     closed.entropy(section, gas, "1")
     closed.energy(section, gas, "1")
-    section.formula("v_2", "v_1 / r", "Specific volume at corner 2", "m³/kg")
+    section.formula("v_2", "v_1 / r", "Specific volume at corner 2", "m³/kg",
+                    reference="definition of the compression ratio: greatest volume over smallest")
     closed.isentrope(plan, section, gas, "1", "2", ratio="r", squeezes=True)
     closed.energy(section, gas, "2")
     section = plan.section("Heat taken")
@@ -92,7 +94,8 @@ def corners(plan: Plan, gas: Gas, cycle: Cycle) -> None:
             _heated_at_pressure(plan, section, gas, cycle, process)
         closed.entropy(section, gas, process.end)
     if plan.options["heat"] != "heat":
-        section.formula("q_in", " + ".join(f"q_{one.tag}" for one in cycle.heating), "Heat taken", "kJ/kg")
+        section.formula("q_in", " + ".join(f"q_{one.tag}" for one in cycle.heating), "Heat taken", "kJ/kg",
+                        reference=grounds.SUM)
     _expansion(plan, gas, cycle)
 
 
@@ -120,7 +123,8 @@ def _heated_at_pressure(plan: Plan, section: Section, gas: Gas, cycle: Cycle, it
     closed.enthalpy(section, gas, start)
     match plan.options["heat"]:
         case "cut-off":
-            section.formula(f"v_{end}", f"r_c * v_{start}", f"Specific volume at corner {end}", "m³/kg")
+            section.formula(f"v_{end}", f"r_c * v_{start}", f"Specific volume at corner {end}", "m³/kg",
+                            reference="definition of the cut-off ratio, solved for the volume")
             section.formula(f"T_{end}", f"r_c * T_{start}", f"Temperature at corner {end}", "degC",
                             reference="ideal gas at constant pressure: T rises as v")
             closed.enthalpy(section, gas, end)
@@ -137,7 +141,8 @@ def _heated_at_pressure(plan: Plan, section: Section, gas: Gas, cycle: Cycle, it
                         reference="first law at constant pressure: the rise of enthalpy")
     if plan.options["heat"] != "cut-off":
         section.formula("r_c", f"v_{end} / v_{start}",
-                        "Cut-off ratio: volume after the heat at constant pressure over before")
+                        "Cut-off ratio: volume after the heat at constant pressure over before",
+                        reference="definition of the cut-off ratio")
     plan.demand("r_c < r", "the heat at constant pressure lasts beyond the end of the stroke",
                 "give less heat, or a greater compression ratio")
 
@@ -148,12 +153,13 @@ def _heated_to_enthalpy(plan: Plan, section: Section, gas: Gas, cycle: Cycle, it
         before = cycle.heating[0].tag
         plan.demand(f"q_in > q_{before}", "the heat at constant volume is more than all the heat",
                     "give more heat, or lower r_h")
-        heat = section.formula(f"q_{it.tag}", f"q_in - q_{before}", "Heat left for constant pressure", "kJ/kg")
+        heat = section.formula(f"q_{it.tag}", f"q_in - q_{before}", "Heat left for constant pressure", "kJ/kg",
+                               reference="derived: whole heat less heat at constant volume")
     section.formula(f"h_{it.end}", f"h_{it.start} + {heat}", f"Specific enthalpy at corner {it.end}", "kJ/kg",
                     reference="first law at constant pressure")
     title = f"Temperature at corner {it.end}"
     if gas.constant:
-        section.formula(f"T_{it.end}", f"T_z + h_{it.end} / cp", title, "degC")
+        section.formula(f"T_{it.end}", f"T_z + h_{it.end} / cp", title, "degC", reference=grounds.HEAT_CAPACITY)
     else:
         section.property(f"T_{it.end}", f"T({gas.role}, h=h_{it.end})", title)
 
@@ -193,7 +199,8 @@ def _expansion_to_pressure(section: Section, gas: Gas, start: str, end: str) -> 
         section.property(f"T_{end}", f"T({gas.role}, p=p_{end}, s=s_{start})", title)
     closed.volume(section, end)
     closed.entropy(section, gas, end)
-    section.formula("r_e", f"v_{end} / v_2", "Expansion ratio, greater than the compression ratio")
+    section.formula("r_e", f"v_{end} / v_2", "Expansion ratio, greater than the compression ratio",
+                    reference="definition of the expansion ratio: volume at its end over smallest volume")
 
 
 def processes(plan: Plan, cycle: Cycle) -> None:
@@ -204,26 +211,29 @@ def processes(plan: Plan, cycle: Cycle) -> None:
         if it.along == "s":
             works.append(section.formula(f"w_{it.tag}", f"u_{it.start} - u_{it.end}",
                                          f"Work on the adiabat from {it.start} to {it.end}", "kJ/kg",
-                                         note="given; below zero it is drawn"))
+                                         note="given; below zero it is drawn",
+                                         reference="first law, closed system, adiabatic: work is the fall of u"))
         elif it.along == "p":
             works.append(section.formula(f"w_{it.tag}", f"p_{it.start} * (v_{it.end} - v_{it.start})",
                                          f"Work at constant pressure from {it.start} to {it.end}", "kJ/kg",
-                                         note="given; below zero it is drawn"))
-    section.formula("w_net", " + ".join(works), "Net work of a kilogram", "kJ/kg")
+                                         note="given; below zero it is drawn",
+                                         reference="work of a moving boundary at constant pressure: p Δv"))
+    section.formula("w_net", " + ".join(works), "Net work of a kilogram", "kJ/kg", reference=grounds.SUM)
     plan.demand("w_net > 0 kJ/kg", "the cycle gives no work", "take more heat")
     section.formula("q_net", "q_in - q_out", "Heat taken less heat given away", "kJ/kg",
-                    note="equal to the net work")
+                    note="equal to the net work", reference=grounds.FIRST_LAW_OF_CYCLE)
     plan.facts.equals.append(Equal("w_net", "q_net", "net work equals net heat", 1e-8))
 
 
 def efficiency(plan: Plan, gas: Gas, cycle: Cycle) -> None:
     """Efficiency and mean effective pressure."""
     section = plan.section("Efficiency and mean effective pressure")
-    section.formula("eta", "w_net / q_in", "Thermal efficiency")
+    section.formula("eta", "w_net / q_in", "Thermal efficiency", reference=grounds.EFFICIENCY)
     widest = "1" if cycle.cooling.along == "v" else cycle.expanded
     section.formula("p_m", f"w_net / (v_{widest} - v_2)", "Mean effective pressure", "bar",
                     reference="net work over the volume swept")
-    section.formula("p_most", f"p_{cycle.hottest}", "Highest pressure", "bar")
+    section.formula("p_most", f"p_{cycle.hottest}", "Highest pressure", "bar",
+                    reference="the pressure after the last heat is the highest of the cycle")
     if gas.constant:
         plan.facts.again.append(Again("eta", cycle.closed_form,
                                       "the cycle's relation for constant heat capacities"))
@@ -233,15 +243,16 @@ def bound(plan: Plan, cycle: Cycle) -> None:
     """The efficiency from entropic mean temperatures, and Carnot's between the extremes."""
     section = plan.section("Mean temperatures and Carnot's bound")
     section.formula("T_m_in", f"q_in / (s_{cycle.hottest} - s_2)",
-                    "Entropic mean temperature of the heat taken", "degC")
+                    "Entropic mean temperature of the heat taken", "degC", reference=grounds.MEAN_OF_HEAT)
     section.formula("T_m_out", f"q_out / (s_{cycle.expanded} - s_1)",
                     "Entropic mean temperature of the heat given away",
-                    "degC")
+                    "degC", reference=grounds.MEAN_OF_HEAT)
     section.formula("eta_m", "1 - T_m_out / T_m_in", "Efficiency from the mean temperatures",
                     reference="a reversible cycle between two mean temperatures")
     section.formula("eta_C", f"1 - T_1 / T_{cycle.hottest}",
-                    "Carnot's efficiency between the extreme temperatures")
-    section.formula("g_C", "eta / eta_C", "Share of Carnot's efficiency that is reached")
+                    "Carnot's efficiency between the extreme temperatures", reference=grounds.CARNOT)
+    section.formula("g_C", "eta / eta_C", "Share of Carnot's efficiency that is reached",
+                    reference=grounds.SHARE_OF_CARNOT)
     plan.facts.equals.append(Equal("eta", "eta_m", "efficiency from work and heat, and from mean temperatures",
                                    1e-8))
     plan.facts.bounds.append(Bound("eta", "eta_C",

@@ -78,7 +78,8 @@ def _most_work(plan: Plan, train: Train) -> None:
     plan.section("Pressure ratio").optimum(
         "r_p", "w_net", ("1.01", f"min((T_t / T_1)^{exponent:.3g}, 300)"),
         "Pressure ratio of the greatest net work",
-        note="at its upper bound it is the bound that sets it: give the pressure ratio instead")
+        note="at its upper bound it is the bound that sets it: give the pressure ratio instead",
+        reference="condition of the greatest net work, found by search between the bounds")
 
 
 def _inputs(plan: Plan, train: Train) -> None:

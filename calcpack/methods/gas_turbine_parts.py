@@ -4,6 +4,7 @@ from __future__ import annotations
 from itertools import pairwise
 
 from calcpack.methods.gas_turbine_train import Train
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.gas import GasState, at_enthalpy, caloric, compress, expand, specific_volume
 from calcpack.plan.facts import Again, Bound, Equal
 from calcpack.plan.plan import Plan, Section
@@ -17,7 +18,8 @@ def compression(plan: Plan, train: Train) -> None:
         caloric(section, inlet)
         compress(section, inlet, outlet, f"w_{tags[k]}", names[k])
     for k, ((_, warm), (cool, _)) in enumerate(pairwise(train.compressors), start=1):
-        section.formula(f"q_ic{k}", f"{warm.h} - {cool.h}", f"Heat given away in intercooler {k}", "kJ/kg")
+        section.formula(f"q_ic{k}", f"{warm.h} - {cool.h}", f"Heat given away in intercooler {k}", "kJ/kg",
+                        reference=grounds.HEAT_OF_KILOGRAM)
     _sum(section, "w_c", tags, "Specific work of all compressors")
 
 
@@ -35,7 +37,7 @@ def expansion(plan: Plan, train: Train) -> None:
 
 def _sum(section: Section, symbol: str, tags: list[str], title: str) -> None:
     if len(tags) > 1:
-        section.formula(symbol, " + ".join(f"w_{tag}" for tag in tags), title, "kJ/kg")
+        section.formula(symbol, " + ".join(f"w_{tag}" for tag in tags), title, "kJ/kg", reference=grounds.SUM)
 
 
 def regenerator(plan: Plan, train: Train) -> None:
@@ -52,7 +54,8 @@ def regenerator(plan: Plan, train: Train) -> None:
     section.formula(air.h, f"{cold.h} + epsilon * ({most} - {cold.h})", f"Specific enthalpy {air.label}",
                     "kJ/kg",
                     reference="effectiveness: heat passed on over the most that could be")
-    section.formula("q_reg", f"{air.h} - {cold.h}", "Heat passed on by the regenerator", "kJ/kg")
+    section.formula("q_reg", f"{air.h} - {cold.h}", "Heat passed on by the regenerator", "kJ/kg",
+                    reference=grounds.HEAT_OF_KILOGRAM)
     at_enthalpy(section, air)
 
 
@@ -69,37 +72,45 @@ def heat(plan: Plan, train: Train) -> None:
                     reference="energy balance; the fuel counts as heat")
     parts = [first]
     for k, ((_, cold), (hot, _)) in enumerate(pairwise(train.turbines), start=1):
-        parts.append(section.formula(f"q_rh{k}", f"{hot.h} - {cold.h}", f"Heat taken in reheater {k}", "kJ/kg"))
+        parts.append(section.formula(f"q_rh{k}", f"{hot.h} - {cold.h}", f"Heat taken in reheater {k}", "kJ/kg",
+                                     reference=grounds.HEAT_OF_KILOGRAM))
     if several:
-        section.formula("q_in", " + ".join(parts), "Heat taken in all", "kJ/kg")
+        section.formula("q_in", " + ".join(parts), "Heat taken in all", "kJ/kg", reference=grounds.SUM)
 
 
 def _fuel(plan: Plan, start: GasState, end: GasState) -> None:
     """Fuel a kilogram of air: air and products have their zero of enthalpy at 25 °C, where the heating value holds."""
     section = plan.section("Fuel")
     section.formula("h_f", "0 kJ/kg", "Specific enthalpy of the fuel at 25 °C, where enthalpies are zero",
-                    "kJ/kg")
+                    "kJ/kg", reference="chosen zero: fuel enters at 25 °C, where the heating value is stated")
     section.formula("f", f"({end.h} - {start.h}) / (eta_cc * LHV + h_f - {end.h})", "Fuel over air, by mass",
                     reference="energy balance of the combustor; enthalpies are zero at 25 °C, as for the heating value")
-    section.formula("q_in", "f * eta_cc * LHV", "Heat of the fuel given to the gas, a kilogram of air", "kJ/kg")
+    section.formula("q_in", "f * eta_cc * LHV", "Heat of the fuel given to the gas, a kilogram of air", "kJ/kg",
+                    reference="definition of the combustor's efficiency: heat given over heating value")
     _composition(plan)
 
 
 def _composition(plan: Plan) -> None:
     """The shares of the products that belong to the fuel found, to be set against those that the spec states."""
     section = plan.section("Composition of the products")
-    section.formula("M_f", "n_C * 12.011 g/mol + n_H * 1.008 g/mol", "Molar mass of the fuel", "g/mol")
+    section.formula("M_f", "n_C * 12.011 g/mol + n_H * 1.008 g/mol", "Molar mass of the fuel", "g/mol",
+                    reference="molar masses of carbon and hydrogen (IUPAC, conventional, from memory)")
     section.property("M_a", "M(air)", "Molar mass of the air")
-    section.formula("n_a", "M_f / (f * M_a)", "Air for each mole of fuel, in moles")
+    section.formula("n_a", "M_f / (f * M_a)", "Air for each mole of fuel, in moles",
+                    reference="definition of the fuel-air ratio by mass, put into moles")
     section.formula("n_O", "n_C + n_H / 4", "Oxygen burnt for each mole of fuel, in moles",
                     reference="complete combustion to CO2 and H2O")
-    section.formula("x_a", "0.2095", "Oxygen in dry air, by mole")
-    section.formula("lambda", "n_a * x_a / n_O", "Air ratio: air given over air needed")
-    section.formula("n_g", "n_a + n_H / 4", "Products for each mole of fuel, in moles")
-    section.formula("x_CO2", "n_C / n_g", "Carbon dioxide in the products, by mole")
-    section.formula("x_H2O", "n_H / 2 / n_g", "Water in the products, by mole")
-    section.formula("x_O2", "(n_a * x_a - n_O) / n_g", "Oxygen in the products, by mole")
-    section.formula("x_N2", "n_a * (1 - x_a) / n_g", "Nitrogen and argon in the products, by mole")
+    section.formula("x_a", "0.2095", "Oxygen in dry air, by mole",
+                    reference="dry air: 20.95 % oxygen, the rest counted as nitrogen (from memory)")
+    section.formula("lambda", "n_a * x_a / n_O", "Air ratio: air given over air needed",
+                    reference="definition of the air ratio: oxygen given over oxygen needed")
+    section.formula("n_g", "n_a + n_H / 4", "Products for each mole of fuel, in moles",
+                    reference="C_x H_y + (x + y/4) O2 = x CO2 + y/2 H2O: moles grow by y/4")
+    section.formula("x_CO2", "n_C / n_g", "Carbon dioxide in the products, by mole", reference="balance of carbon")
+    section.formula("x_H2O", "n_H / 2 / n_g", "Water in the products, by mole", reference="balance of hydrogen")
+    section.formula("x_O2", "(n_a * x_a - n_O) / n_g", "Oxygen in the products, by mole", reference="balance of oxygen")
+    section.formula("x_N2", "n_a * (1 - x_a) / n_g", "Nitrogen and argon in the products, by mole",
+                    reference="balance of nitrogen, argon counted with it")
     section.property("M_g", "M(gas)", "Molar mass of the products as stated in the spec")
 
 
@@ -116,13 +127,16 @@ def specific(plan: Plan, train: Train) -> None:
     """Net work, efficiency, back-work ratio, and Carnot's bound."""
     section = plan.section("Specific work and efficiency")
     if plan.options["gas"] == "products":
-        section.formula("w_t", "(1 + f) * w_g", "Specific work of the turbine, a kilogram of air", "kJ/kg")
-    section.formula("w_net", "w_t - w_c", "Specific net work", "kJ/kg")
+        section.formula("w_t", "(1 + f) * w_g", "Specific work of the turbine, a kilogram of air", "kJ/kg",
+                        reference="mass balance: 1 + f kilograms of products a kilogram of air")
+    section.formula("w_net", "w_t - w_c", "Specific net work", "kJ/kg", reference=grounds.NET_WORK)
     if plan.options["pressure_ratio"] == "most-work":
         plan.close("r_p")
-    section.formula("eta", "w_net / q_in", "Thermal efficiency on the heat given to the gas")
-    section.formula("r_bw", "w_c / w_t", "Back-work ratio: compressors over turbines")
-    section.formula("r_w", "w_net / w_t", "Work ratio: net work over that of the turbines")
+    section.formula("eta", "w_net / q_in", "Thermal efficiency on the heat given to the gas",
+                    reference=grounds.EFFICIENCY)
+    section.formula("r_bw", "w_c / w_t", "Back-work ratio: compressors over turbines", reference=grounds.BACK_WORK)
+    section.formula("r_w", "w_net / w_t", "Work ratio: net work over that of the turbines",
+                    reference=grounds.WORK_RATIO)
     if plan.options["gas"] != "products":
         _carnot(plan, section, train)
 
@@ -130,7 +144,8 @@ def specific(plan: Plan, train: Train) -> None:
 def _carnot(plan: Plan, section: Section, train: Train) -> None:
     cold = "min(T_1, T_ic)" if len(train.compressors) > 1 else "T_1"
     hot = "max(T_t, T_rh)" if len(train.turbines) > 1 else "T_t"
-    section.formula("eta_C", f"1 - {cold} / {hot}", "Carnot's efficiency between the extreme temperatures")
+    section.formula("eta_C", f"1 - {cold} / {hot}", "Carnot's efficiency between the extreme temperatures",
+                    reference=grounds.CARNOT)
     plan.facts.bounds.append(Bound("eta", "eta_C",
                                    "the efficiency stays below Carnot's between the extreme temperatures"))
 
@@ -169,20 +184,25 @@ def power(plan: Plan, train: Train) -> None:
     _flow(plan, section, train)
     products = plan.options["gas"] == "products"
     for tag, name in zip(train.tags("c"), train.names("compressor"), strict=True):
-        section.formula(f"W_dot_{tag}", f"m_dot * w_{tag}", f"Power of the {name}", "kW")
+        section.formula(f"W_dot_{tag}", f"m_dot * w_{tag}", f"Power of the {name}", "kW",
+                        reference=grounds.POWER_OF_FLOW)
     for tag, name in zip(train.tags("t"), train.names("turbine"), strict=True):
-        section.formula(f"W_dot_{tag}", f"m_dot * w_{tag}", f"Power of the {name}", "kW")
-    section.formula("W_dot_s", "m_dot * w_net", "Net power at the shaft", "kW")
+        section.formula(f"W_dot_{tag}", f"m_dot * w_{tag}", f"Power of the {name}", "kW",
+                        reference=grounds.POWER_OF_FLOW)
+    section.formula("W_dot_s", "m_dot * w_net", "Net power at the shaft", "kW", reference=grounds.POWER_OF_FLOW)
     size = plan.options["size"]
     if size != "power":
-        section.formula("W_dot_net", "eta_gen * W_dot_s", "Net electrical power", "kW")
+        section.formula("W_dot_net", "eta_gen * W_dot_s", "Net electrical power", "kW", reference=grounds.GENERATOR)
     if size != "heat":
-        section.formula("Q_dot_in", "m_dot * q_in", "Heat given to the gas", "kW")
-    section.formula("Q_dot_f", "Q_dot_in / eta_cc", "Energy of the fuel by its lower heating value", "kW")
+        section.formula("Q_dot_in", "m_dot * q_in", "Heat given to the gas", "kW", reference=grounds.HEAT_OF_SPECIFIC)
+    section.formula("Q_dot_f", "Q_dot_in / eta_cc", "Energy of the fuel by its lower heating value", "kW",
+                    reference="definition of the combustor's efficiency: heat given over heating value")
     if products:
-        section.formula("m_dot_f", "f * m_dot", "Mass flow of the fuel", "kg/s")
-        section.formula("m_dot_g", "m_dot + m_dot_f", "Mass flow of the products", "kg/s")
-    section.formula("eta_el", "W_dot_net / Q_dot_f", "Electrical efficiency on the fuel's lower heating value")
+        section.formula("m_dot_f", "f * m_dot", "Mass flow of the fuel", "kg/s",
+                        reference="definition of the fuel-air ratio by mass")
+        section.formula("m_dot_g", "m_dot + m_dot_f", "Mass flow of the products", "kg/s", reference=grounds.MASS)
+    section.formula("eta_el", "W_dot_net / Q_dot_f", "Electrical efficiency on the fuel's lower heating value",
+                    reference="definition of the electrical efficiency: net electrical power over energy of the fuel")
     section.formula("HR", "1 / eta_el", "Heat rate", "kJ/kWh",
                     reference="energy of the fuel for a unit of electrical work")
     plan.facts.again.append(Again("W_dot_net", "eta_gen * eta * Q_dot_in", "from the heat given to the gas"))
@@ -192,24 +212,30 @@ def _flow(plan: Plan, section: Section, train: Train) -> None:
     match plan.options["size"]:
         case "volume-flow":
             v = specific_volume(section, train.compressors[0][0])
-            section.formula("m_dot", f"V_dot_1 / {v}", "Mass flow of air", "kg/s")
+            section.formula("m_dot", f"V_dot_1 / {v}", "Mass flow of air", "kg/s",
+                            reference="definition of the specific volume: volume flow over mass flow")
         case "power":
-            section.formula("m_dot", "W_dot_net / (eta_gen * w_net)", "Mass flow of air", "kg/s")
+            section.formula("m_dot", "W_dot_net / (eta_gen * w_net)", "Mass flow of air", "kg/s",
+                            reference=grounds.FLOW_FOR_WORK)
         case "heat":
-            section.formula("m_dot", "Q_dot_in / q_in", "Mass flow of air", "kg/s")
+            section.formula("m_dot", "Q_dot_in / q_in", "Mass flow of air", "kg/s", reference=grounds.FLOW_FOR_HEAT)
 
 
 def heats(plan: Plan, train: Train) -> None:
     """Heat flows of each exchanger, for the balances."""
     section = plan.section("Heat flows")
     for k in range(1, len(train.compressors)):
-        section.formula(f"Q_dot_ic{k}", f"m_dot * q_ic{k}", f"Heat given away in intercooler {k}", "kW")
+        section.formula(f"Q_dot_ic{k}", f"m_dot * q_ic{k}", f"Heat given away in intercooler {k}", "kW",
+                        reference=grounds.HEAT_OF_SPECIFIC)
     if len(train.turbines) > 1:
-        section.formula("Q_dot_cc", "m_dot * q_cc", "Heat taken in the combustor", "kW")
+        section.formula("Q_dot_cc", "m_dot * q_cc", "Heat taken in the combustor", "kW",
+                        reference=grounds.HEAT_OF_SPECIFIC)
         for k in range(1, len(train.turbines)):
-            section.formula(f"Q_dot_rh{k}", f"m_dot * q_rh{k}", f"Heat taken in reheater {k}", "kW")
+            section.formula(f"Q_dot_rh{k}", f"m_dot * q_rh{k}", f"Heat taken in reheater {k}", "kW",
+                            reference=grounds.HEAT_OF_SPECIFIC)
     if train.regenerated:
-        section.formula("Q_dot_reg", "m_dot * q_reg", "Heat passed on by the regenerator", "kW")
+        section.formula("Q_dot_reg", "m_dot * q_reg", "Heat passed on by the regenerator", "kW",
+                        reference=grounds.HEAT_OF_SPECIFIC)
 
 
 def exhaust(plan: Plan, train: Train) -> None:
@@ -225,11 +251,13 @@ def exhaust(plan: Plan, train: Train) -> None:
     caloric(section, dead)
     section.formula("Q_dot_ex", f"{flow} * ({it.h} - {dead.h})",
                     "Heat leaving with the exhaust, down to the dead state",
-                    "kW", note="sensible heat: water in the exhaust, if any, stays vapour")
+                    "kW", note="sensible heat: water in the exhaust, if any, stays vapour",
+                    reference=grounds.HEAT_OF_FLOW)
     section.formula("e_ex", f"({it.h} - {dead.h}) - T_0 * ({it.s} - {dead.s})",
                     "Specific flow exergy of the exhaust",
                     "kJ/kg", reference="flow exergy without kinetic, potential and chemical parts")
-    section.formula("E_dot_ex", f"{flow} * e_ex", "Exergy leaving with the exhaust", "kW")
+    section.formula("E_dot_ex", f"{flow} * e_ex", "Exergy leaving with the exhaust", "kW",
+                    reference=grounds.EXERGY_OF_FLOW)
     if plan.options["gas"] != "products":
         _balance(plan, section, train)
 
@@ -238,7 +266,7 @@ def _balance(plan: Plan, section: Section, train: Train) -> None:
     """The first law of the whole plant, a kilogram of air."""
     cooled = "".join(f" + q_ic{k}" for k in range(1, len(train.compressors)))
     section.formula("q_out", f"{train.exhaust.h} - {train.compressors[0][0].h}{cooled}",
-                    "Heat given away, in the exhaust and the intercoolers", "kJ/kg")
+                    "Heat given away, in the exhaust and the intercoolers", "kJ/kg", reference=grounds.HEAT_OF_KILOGRAM)
     section.formula("w_bal", "q_in - q_out", "Net work from heat taken and given away", "kJ/kg",
-                    note="equal to the net work of the machines")
+                    note="equal to the net work of the machines", reference=grounds.FIRST_LAW_OF_CYCLE)
     plan.facts.equals.append(Equal("w_net", "w_bal", "net work by the machines and by the heats", 1e-9))

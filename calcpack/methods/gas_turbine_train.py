@@ -5,6 +5,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 from itertools import count, pairwise
 
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.gas import Gas, GasState
 from calcpack.plan.plan import Plan, Section
 
@@ -117,12 +118,13 @@ def pressures(plan: Plan, train: Train) -> None:
         before = train.compressed.p
         if train.regenerated:
             section.formula(train.regenerated.p, f"{before} * (1 - f_rc)",
-                            "Pressure of the air behind the regenerator", "bar")
+                            "Pressure of the air behind the regenerator", "bar", reference=grounds.LOSS_OF_PRESSURE)
             before = train.regenerated.p
         section.formula(train.turbines[0][0].p, f"{before} * (1 - f_cc)", "Pressure behind the combustor",
-                        "bar")
+                        "bar", reference=grounds.LOSS_OF_PRESSURE)
         section.formula(train.expanded.p, "p_1 / (1 - f_ex)", "Pressure at the last turbine's outlet", "bar",
-                        note="the exhaust leaves at the pressure of the compressor inlet")
+                        note="the exhaust leaves at the pressure of the compressor inlet",
+                        reference=grounds.LOSS_OF_PRESSURE)
     _turbine_pressures(plan, section, train)
 
 
@@ -130,15 +132,17 @@ def _compressor_pressures(plan: Plan, section: Section, train: Train) -> None:
     losses, stages = plan.options["losses"] == "given", len(train.compressors)
     if stages > 1 and plan.options["split"] == "equal":
         whole = f"(r_p / (1 - f_ic)^{stages - 1})" if losses else "r_p"
-        section.formula("r_c", f"{whole}^(1 / {stages})", "Pressure ratio of each compressor")
+        section.formula("r_c", f"{whole}^(1 / {stages})", "Pressure ratio of each compressor",
+                        reference=grounds.EQUAL_RATIOS)
     for k, (inlet, outlet) in enumerate(train.compressors):
         if losses and k:
             section.formula(inlet.p, f"{train.compressors[k - 1][1].p} * (1 - f_ic)", f"Pressure {inlet.label}",
-                            "bar")
+                            "bar", reference=grounds.LOSS_OF_PRESSURE)
         if k == stages - 1:
-            section.formula(outlet.p, "r_p * p_1", f"Pressure {outlet.label}", "bar")
+            section.formula(outlet.p, "r_p * p_1", f"Pressure {outlet.label}", "bar", reference=grounds.HIGH_PRESSURE)
         elif plan.options["split"] == "equal":
-            section.formula(outlet.p, f"r_c * {inlet.p}", f"Pressure {outlet.label}", "bar")
+            section.formula(outlet.p, f"r_c * {inlet.p}", f"Pressure {outlet.label}", "bar",
+                            reference=grounds.HIGH_PRESSURE)
 
 
 def _turbine_pressures(plan: Plan, section: Section, train: Train) -> None:
@@ -146,9 +150,12 @@ def _turbine_pressures(plan: Plan, section: Section, train: Train) -> None:
     first, last = train.turbines[0][0].p, train.expanded.p
     if reheats and plan.options["split"] == "equal":
         whole = f"({first} / {last} * (1 - f_rh)^{reheats})" if losses else f"({first} / {last})"
-        section.formula("r_t", f"{whole}^(1 / {reheats + 1})", "Pressure ratio of each turbine")
+        section.formula("r_t", f"{whole}^(1 / {reheats + 1})", "Pressure ratio of each turbine",
+                        reference=grounds.EQUAL_RATIOS)
     for (inlet, outlet), (following, _) in pairwise(train.turbines):
         if plan.options["split"] == "equal":
-            section.formula(outlet.p, f"{inlet.p} / r_t", f"Pressure {outlet.label}", "bar")
+            section.formula(outlet.p, f"{inlet.p} / r_t", f"Pressure {outlet.label}", "bar",
+                            reference="definition of the pressure ratio, solved for the outlet pressure")
         if losses:
-            section.formula(following.p, f"{outlet.p} * (1 - f_rh)", f"Pressure {following.label}", "bar")
+            section.formula(following.p, f"{outlet.p} * (1 - f_rh)", f"Pressure {following.label}", "bar",
+                            reference=grounds.LOSS_OF_PRESSURE)

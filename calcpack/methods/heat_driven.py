@@ -5,6 +5,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 
 from calcpack.methods.method import Method, Option, Role
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.streams import Stream, entropic_mean, inlet_state, line, stream
 from calcpack.plan.facts import Bound, Box, Equal, Link, Sketch, Volume
 from calcpack.plan.plan import Plan, Section
@@ -129,7 +130,8 @@ def _heats(section: Section, machine: Machine, coefficient: str, *, real: bool) 
     useful, drive, third = (machine.heat(side, real and side != machine.useful)
                             for side in (machine.useful, machine.drive, machine.third))
     if not real:
-        section.formula(drive, f"{useful} / {coefficient}", "Least driving heat", "kW")
+        section.formula(drive, f"{useful} / {coefficient}", "Least driving heat", "kW",
+                        reference="definition of the coefficient of performance, solved for the driving heat")
     if machine.third in machine.enters:
         section.formula(third, f"{useful} - {drive}", f"Heat taken at the {machine.third} side", "kW",
                         reference="energy balance of the machine")
@@ -148,7 +150,7 @@ def _entropy(section: Section, machine: Machine, levels: Mapping[str, str], *, r
     gone = [side for side in SIDES if side not in machine.enters]
     for symbol, sides, word in ((f"S_dot_in{tag}", machine.enters, "enters"), (f"S_dot_out{tag}", gone, "leaves")):
         section.formula(symbol, " + ".join(f"{heat[side]} / {levels[side]}" for side in sides),
-                        f"Entropy flow that {word} with heat", "kW/K")
+                        f"Entropy flow that {word} with heat", "kW/K", reference=grounds.ENTROPY_OF_HEAT)
     pairs = {True: tuple((heat[side], levels[side]) for side in machine.enters),
              False: tuple((heat[side], levels[side]) for side in gone)}
     section.plan.facts.volumes.append(Volume("real machine" if real else "reversible machine", heat_in=pairs[True],
@@ -169,16 +171,20 @@ def _real(plan: Plan, machine: Machine, levels: Mapping[str, str]) -> None:
     plan.input(drive, "power", "Driving heat of the real machine", typical, low="0 kW", low_open=True)
     section = plan.section("A real machine against the bound")
     useful = machine.heat(machine.useful)
-    section.formula("COP_real", f"{useful} / {drive}", "Useful heat over driving heat of the real machine")
-    section.formula("g_rev", "COP_real / COP_rev", "Share of the bound that it reaches")
+    section.formula("COP_real", f"{useful} / {drive}", "Useful heat over driving heat of the real machine",
+                    reference=grounds.COP)
+    section.formula("g_rev", "COP_real / COP_rev", "Share of the bound that it reaches",
+                    reference=grounds.SHARE_OF_BOUND)
     plan.facts.bounds.append(Bound("COP_real", "COP_rev", "the real machine does no better than the reversible one"))
     if machine.third in machine.enters:
         plan.demand(f"{useful} > {drive}", "the real machine takes no heat at the cold side",
                     "a driving heat as great as the useful heat is plain heating: check the driving heat")
     _heats(section, machine, "COP_real", real=True)
     _entropy(section, machine, levels, real=True)
-    section.formula("S_dot_gen", "S_dot_out_real - S_dot_in_real", "Entropy that the real machine makes", "kW/K")
-    section.formula("Q_dot_more", f"{drive} - {machine.heat(machine.drive)}", "Driving heat above the least", "kW")
+    section.formula("S_dot_gen", "S_dot_out_real - S_dot_in_real", "Entropy that the real machine makes", "kW/K",
+                    reference="second law: entropy that leaves less entropy that enters")
+    section.formula("Q_dot_more", f"{drive} - {machine.heat(machine.drive)}", "Driving heat above the least", "kW",
+                    reference="derived: driving heat less least driving heat")
 
 
 def _sketch(machine: Machine, options: Mapping[str, str]) -> Sketch:

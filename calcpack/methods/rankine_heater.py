@@ -1,6 +1,7 @@
 """The heat that a Rankine engine takes: from the source or by way of a carrier loop, below or above the dome."""
 from __future__ import annotations
 
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.exchanger import Exchanger, Zone, profile
 from calcpack.plan.equipment.streams import Stream, balance
 from calcpack.plan.plan import Plan, Section
@@ -29,11 +30,13 @@ def loop_heater(plan: Plan, source: Stream, loop: Stream) -> Exchanger:
     section.property("h_source_low", "h(source, p=p_source, T=T_loop_out)",
                      "Enthalpy of the source if it were cooled to the loop's return temperature")
     section.formula("Q_dot_most", "m_dot_source * (h_source_in - h_source_low)",
-                    "Heat that no exchanger could exceed", "kW")
+                    "Heat that no exchanger could exceed", "kW",
+                    reference="heat given up down to the lowest temperature that the source could reach")
     section.root("Q_dot_h", "min(dT_min_l - dT_pinch_l, T_source_out - T_source_min)", ("0.01 * Q_dot_most",
                                                                                         "Q_dot_most"),
                  "Heat taken at which the pinch or the lowest outlet is reached", "kW",
-                 note="whichever is reached first governs; the difference is sought along the whole loop heater")
+                 note="whichever is reached first governs; the difference is sought along the whole loop heater",
+                 reference="derived: the smaller of pinch and outlet to spare is zero")
     balance(section, loop, "Q_dot_h")
     balance(section, source, "Q_dot_h")
     zone = Zone("heating the loop", "lh", "h_loop_out", "h_loop_in", "T_loop_out", "T_loop_in")
@@ -50,7 +53,8 @@ def _governing(section: Section, tag: str) -> None:
         (f"{pinch} <= T_source_out - T_source_min", "T_source_out - T_source_min",
          "the pinch governs; the outlet is this far above its lowest"),
         ("", pinch, "the lowest outlet governs; the pinch is this much wider than wanted")),
-        "What governs the heat taken, and what the other condition has to spare", "K")
+        "What governs the heat taken, and what the other condition has to spare", "K",
+                   reference="derived: what is left of the condition that does not govern")
 
 
 def heater(plan: Plan, source: Stream | None, loop: Stream | None) -> Exchanger | None:
@@ -62,7 +66,8 @@ def heater(plan: Plan, source: Stream | None, loop: Stream | None) -> Exchanger 
         if plan.options["expander_inlet"] != "saturated":
             section.property("h_g_e", "h(wf, p=p_e, x=1)", "Enthalpy of the dry vapour at the evaporating pressure")
     if source is None:
-        section.formula("Q_dot_h", f"m_dot_wf * (h_3 - h_{inlet})", "Heat taken by the working fluid", "kW")
+        section.formula("Q_dot_h", f"m_dot_wf * (h_3 - h_{inlet})", "Heat taken by the working fluid", "kW",
+                        reference=grounds.HEAT_OF_FLOW)
         return None
     if not supercritical(plan):
         section.property("T_bub_e", "T(wf, p=p_e, x=0)", "Bubble-point temperature at the evaporating pressure")
@@ -79,8 +84,10 @@ def _at_outlet(plan: Plan, section: Section, source: Stream, inlet: str) -> Exch
     """The outlet is set: heat and flow follow at once, the level is the unknown."""
     section.property("h_source_set", "h(source, p=p_source, T=T_source_set)",
                      "Enthalpy of the source at the set outlet")
-    section.formula("Q_dot_h", "m_dot_source * (h_source_in - h_source_set)", "Heat taken from the source", "kW")
-    section.formula("m_dot_wf", f"Q_dot_h / (h_3 - h_{inlet})", "Mass flow of the working fluid", "kg/s")
+    section.formula("Q_dot_h", "m_dot_source * (h_source_in - h_source_set)", "Heat taken from the source", "kW",
+                    reference=grounds.HEAT_OF_FLOW)
+    section.formula("m_dot_wf", f"Q_dot_h / (h_3 - h_{inlet})", "Mass flow of the working fluid", "kg/s",
+                    reference=grounds.FLOW_FOR_HEAT)
     balance(section, source, "Q_dot_h")
     return _profile(plan, section, source, inlet, "T_e")
 
@@ -94,12 +101,15 @@ def _at_level(plan: Plan, section: Section, source: Stream, inlet: str) -> Excha
     section.property("h_source_low", f"h(source, p=p_source, T=T_{inlet})",
                      "Enthalpy of the source if it were cooled to the working fluid's inlet temperature")
     section.formula("m_dot_most", f"m_dot_source * (h_source_in - h_source_low) / (h_3 - h_{inlet})",
-                    "Flow of working fluid that no exchanger could exceed", "kg/s")
+                    "Flow of working fluid that no exchanger could exceed", "kg/s",
+                    reference="energy balance with the source cooled as far as it could be")
     section.root("m_dot_wf", "min(dT_min_h - dT_pinch_h, T_source_out - T_source_min)",
                  ("0.01 * m_dot_most", "m_dot_most"),
                  "Mass flow of the working fluid at which the pinch or the lowest outlet is reached", "kg/s",
-                 note="whichever is reached first governs; the smallest difference is found along the whole heater")
-    section.formula("Q_dot_h", f"m_dot_wf * (h_3 - h_{inlet})", "Heat taken from the source", "kW")
+                 note="whichever is reached first governs; the smallest difference is found along the whole heater",
+                 reference="derived: the smaller of pinch and outlet to spare is zero")
+    section.formula("Q_dot_h", f"m_dot_wf * (h_3 - h_{inlet})", "Heat taken from the source", "kW",
+                    reference=grounds.HEAT_OF_FLOW)
     balance(section, source, "Q_dot_h")
     result = _profile(plan, section, source, inlet, "m_dot_wf")
     _governing(section, "h")
@@ -128,7 +138,8 @@ def _parts(section: Section, inlet: str) -> tuple[Zone, ...]:
     ends = [(f"h_{inlet}", f"T_{inlet}")]
     for index in range(1, PARTS):
         h = section.formula(f"h_h{index}", f"h_{inlet} + {index / PARTS:g} * (h_3 - h_{inlet})",
-                            f"Enthalpy after {index} of {PARTS} parts of the heat", "kJ/kg")
+                            f"Enthalpy after {index} of {PARTS} parts of the heat", "kJ/kg",
+                            reference=grounds.PARTS_OF_HEAT)
         ends.append((h, section.property(f"T_h{index}", f"T(wf, p=p_e, h={h})",
                                          f"Temperature after {index} of {PARTS} parts of the heat")))
     ends.append(("h_3", "T_3"))

@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from calcpack.methods.gas_engine_parts import engine_sketch
 from calcpack.methods.method import Method, Option, Role
 from calcpack.plan.equipment import closed_gas as closed
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.gas import GAS_VALUES, Gas, gas_inputs
 from calcpack.plan.facts import Again, Bound, Diagram, Equal, Path, StatePoint, Volume
 from calcpack.plan.plan import Plan, Section
@@ -60,15 +61,18 @@ def _corners(plan: Plan, gas: Gas) -> None:
     section = plan.section("The four corners")
     plan.demand("T_h > T_c", "the hot isotherm is not above the cold one", "check the two temperatures")
     for number, T in (("1", "T_c"), ("2", "T_c"), ("3", "T_h"), ("4", "T_h")):
-        section.formula(f"T_{number}", T, f"Temperature at corner {number}, {LABELS[number]}", "degC")
+        section.formula(f"T_{number}", T, f"Temperature at corner {number}, {LABELS[number]}", "degC",
+                        reference="two isotherms: the corners are at the temperatures of source and sink")
     closed.volume(section, "1")
     if plan.options["cycle"] == "stirling":
         for number, formula in (("2", "v_1 / r"), ("3", "v_2"), ("4", "v_1")):
-            section.formula(f"v_{number}", formula, f"Specific volume at corner {number}", "m³/kg")
+            section.formula(f"v_{number}", formula, f"Specific volume at corner {number}", "m³/kg",
+                            reference="constant volume, or definition of the compression ratio")
             closed.pressure(section, number)
     else:
         for number, formula in (("2", "p_1 * r_p"), ("3", "p_2"), ("4", "p_1")):
-            section.formula(f"p_{number}", formula, f"Pressure at corner {number}", "bar")
+            section.formula(f"p_{number}", formula, f"Pressure at corner {number}", "bar",
+                            reference="constant pressure, or definition of the pressure ratio")
             closed.volume(section, number)
     for number in LABELS:
         closed.entropy(section, gas, number)
@@ -87,27 +91,31 @@ def _heats(plan: Plan) -> None:
     section.formula("w_34", f"R * T_h * ln({ratio})", "Work on the hot isotherm", "kJ/kg",
                     reference="isotherm of an ideal gas; for a flow at steady state the same")
     section.formula("w_net", "w_12 + w_34", "Net work", "kJ/kg",
-                    note=f"the works at constant {word} cancel" if not stirling else "no work at constant volume")
+                    note=f"the works at constant {word} cancel" if not stirling else "no work at constant volume",
+                    reference=grounds.SUM)
     section.formula("q_most", f"{letter}_3 - {letter}_2", f"Heat that the gas takes at constant {word}",
-                    "kJ/kg")
-    section.formula("q_reg", "epsilon * q_most", "Heat of it that the regenerator passes on", "kJ/kg")
+                    "kJ/kg", reference=f"first law at constant {word}")
+    section.formula("q_reg", "epsilon * q_most", "Heat of it that the regenerator passes on", "kJ/kg",
+                    reference="definition of the effectiveness: heat passed on over the most that could be")
     section.formula("q_add", "q_most - q_reg", f"Heat at constant {word} that must come from the source",
-                    "kJ/kg")
+                    "kJ/kg", reference="energy balance of the gas between the isotherms")
     section.formula("q_in", "w_34 + q_add", "Heat taken from the source", "kJ/kg",
                     reference="on an isotherm of an ideal gas heat equals work")
     section.formula("q_out", "q_add - w_12", "Heat given to the sink", "kJ/kg",
-                    note="what the regenerator does not take back is given away too")
+                    note="what the regenerator does not take back is given away too",
+                    reference="energy balance of the gas on the way back to corner 1")
     section.formula("q_net", "q_in - q_out", "Heat taken less heat given away", "kJ/kg",
-                    note="equal to the net work")
+                    note="equal to the net work", reference=grounds.FIRST_LAW_OF_CYCLE)
     plan.facts.equals.append(Equal("w_net", "q_net", "net work equals net heat", 1e-9))
 
 
 def _efficiency(plan: Plan) -> None:
     section = plan.section("Efficiency and Carnot's bound")
-    section.formula("eta", "w_net / q_in", "Thermal efficiency")
+    section.formula("eta", "w_net / q_in", "Thermal efficiency", reference=grounds.EFFICIENCY)
     section.formula("eta_C", "1 - T_c / T_h", "Carnot's efficiency between the two isotherms",
                     reference="reached with a perfect regenerator")
-    section.formula("g_C", "eta / eta_C", "Share of Carnot's efficiency that is reached")
+    section.formula("g_C", "eta / eta_C", "Share of Carnot's efficiency that is reached",
+                    reference=grounds.SHARE_OF_CARNOT)
     if plan.options["cycle"] == "stirling":
         section.formula("p_m", "w_net / (v_1 - v_2)", "Mean effective pressure", "bar",
                         reference="net work over the volume swept")
@@ -123,15 +131,19 @@ def _size(plan: Plan) -> None:
     section = plan.section("Power")
     flow = "m_dot"
     if plan.options["cycle"] == "stirling":
-        flow = section.formula("m_dot", "m * n", "Gas through the cycle in a unit of time", "kg/s")
-    section.formula("W_dot", f"{flow} * w_net", "Power of the gas", "kW")
+        flow = section.formula("m_dot", "m * n", "Gas through the cycle in a unit of time", "kg/s",
+                               reference="mass of gas times cycles in a unit of time")
+    section.formula("W_dot", f"{flow} * w_net", "Power of the gas", "kW", reference=grounds.POWER_OF_FLOW)
     _heat_flows(section, flow)
 
 
 def _heat_flows(section: Section, flow: str) -> None:
-    section.formula("Q_dot_in", f"{flow} * q_in", "Heat flow taken from the source", "kW")
-    section.formula("Q_dot_out", f"{flow} * q_out", "Heat flow given to the sink", "kW")
-    section.formula("Q_dot_reg", f"{flow} * q_reg", "Heat flow through the regenerator", "kW")
+    section.formula("Q_dot_in", f"{flow} * q_in", "Heat flow taken from the source", "kW",
+                    reference=grounds.HEAT_OF_SPECIFIC)
+    section.formula("Q_dot_out", f"{flow} * q_out", "Heat flow given to the sink", "kW",
+                    reference=grounds.HEAT_OF_SPECIFIC)
+    section.formula("Q_dot_reg", f"{flow} * q_reg", "Heat flow through the regenerator", "kW",
+                    reference=grounds.HEAT_OF_SPECIFIC)
 
 
 def _facts(plan: Plan, gas: Gas) -> None:

@@ -5,6 +5,7 @@ from collections.abc import Mapping
 
 from calcpack.methods.method import Method, Option, Role
 from calcpack.methods.reversed_gas_parts import Loop, facts, heat_flows, loop, states, work
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.gas import GAS_VALUES, gas_inputs, specific_volume, zeros
 from calcpack.plan.plan import Plan
 
@@ -84,17 +85,23 @@ def _power(plan: Plan, it: Loop) -> None:
     cooling, size = plan.options["duty"] == "refrigerator", plan.options["size"]
     if size == "volume-flow":
         v = specific_volume(section, it.inlet)
-        section.formula("m_dot", f"V_dot_1 / {v}", "Mass flow of gas", "kg/s")
+        section.formula("m_dot", f"V_dot_1 / {v}", "Mass flow of gas", "kg/s",
+                        reference="definition of the specific volume: volume flow over mass flow")
     elif size == "duty":
-        section.formula("m_dot", "Q_dot_c / q_c" if cooling else "Q_dot_h / q_h", "Mass flow of gas", "kg/s")
+        section.formula("m_dot", "Q_dot_c / q_c" if cooling else "Q_dot_h / q_h", "Mass flow of gas", "kg/s",
+                        reference=grounds.FLOW_FOR_HEAT)
     if size != "duty" or not cooling:
-        section.formula("Q_dot_c", "m_dot * q_c", "Heat taken at the cold side", "kW")
+        section.formula("Q_dot_c", "m_dot * q_c", "Heat taken at the cold side", "kW",
+                        reference=grounds.HEAT_OF_SPECIFIC)
     if size != "duty" or cooling:
-        section.formula("Q_dot_h", "m_dot * q_h", "Heat given at the hot side", "kW")
-    section.formula("W_dot_c", "m_dot * w_c", "Power of the compressor", "kW")
-    section.formula("W_dot_t", "m_dot * w_t", "Power of the turbine", "kW")
-    section.formula("W_dot", "W_dot_c - W_dot_t", "Power drawn at the shaft", "kW")
-    section.formula("W_dot_el", "W_dot / eta_dr", "Electrical power drawn", "kW")
+        section.formula("Q_dot_h", "m_dot * q_h", "Heat given at the hot side", "kW",
+                        reference=grounds.HEAT_OF_SPECIFIC)
+    section.formula("W_dot_c", "m_dot * w_c", "Power of the compressor", "kW", reference=grounds.POWER_OF_FLOW)
+    section.formula("W_dot_t", "m_dot * w_t", "Power of the turbine", "kW", reference=grounds.POWER_OF_FLOW)
+    section.formula("W_dot", "W_dot_c - W_dot_t", "Power drawn at the shaft", "kW",
+                    reference="derived: power of the compressor less that of the turbine")
+    section.formula("W_dot_el", "W_dot / eta_dr", "Electrical power drawn", "kW",
+                    reference="definition of the drive's efficiency: power at the shaft over electrical power")
 
 
 def _roles(options: Mapping[str, str]) -> tuple[Role, ...]:

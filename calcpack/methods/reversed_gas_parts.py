@@ -3,6 +3,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.gas import Gas, GasState, at_enthalpy, caloric, compress, expand
 from calcpack.plan.facts import Again, Bound, Box, Diagram, Equal, Ladder, Link, Path, Rung, Sketch, Volume
 from calcpack.plan.plan import Plan
@@ -45,10 +46,10 @@ def states(plan: Plan, it: Loop) -> None:
     """States around the loop."""
     section = plan.section("States of the gas")
     if plan.options["pressures"] == "ratio":
-        section.formula("p_2", "r_p * p_1", "High pressure", "bar")
+        section.formula("p_2", "r_p * p_1", "High pressure", "bar", reference=grounds.HIGH_PRESSURE)
     else:
         plan.demand("p_2 > p_1", "the high pressure is not above the low pressure", "check the two pressures")
-        section.formula("r_p", "p_2 / p_1", "Pressure ratio")
+        section.formula("r_p", "p_2 / p_1", "Pressure ratio", reference=grounds.PRESSURE_RATIO)
     plan.demand(f"{it.cooled.T} > {it.left.T}", "the hot side is not warmer than the cold side",
                 f"no machine is called for: check {it.cooled.T} and {it.left.T}")
     caloric(section, it.left)
@@ -76,24 +77,31 @@ def states(plan: Plan, it: Loop) -> None:
 def work(plan: Plan, it: Loop) -> None:
     """Specific work and heats, coefficient of performance, the reversible bound."""
     section = plan.section("Specific work, heats and coefficient of performance")
-    section.formula("w_net", "w_c - w_t", "Specific work drawn", "kJ/kg")
-    section.formula("q_c", f"{it.left.h} - {it.expanded.h}", "Heat taken at the cold side", "kJ/kg")
-    section.formula("q_h", f"{it.compressed.h} - {it.cooled.h}", "Heat given at the hot side", "kJ/kg")
+    section.formula("w_net", "w_c - w_t", "Specific work drawn", "kJ/kg",
+                    reference="derived: work of the compressor less that of the turbine")
+    section.formula("q_c", f"{it.left.h} - {it.expanded.h}", "Heat taken at the cold side", "kJ/kg",
+                    reference=grounds.HEAT_OF_KILOGRAM)
+    section.formula("q_h", f"{it.compressed.h} - {it.cooled.h}", "Heat given at the hot side", "kJ/kg",
+                    reference=grounds.HEAT_OF_KILOGRAM)
     section.formula("w_bal", "q_h - q_c", "Specific work from the heats", "kJ/kg",
-                    note="equal to that of the machines")
+                    note="equal to that of the machines", reference=grounds.FIRST_LAW_OF_CYCLE)
     hot, cold = it.cooled.T, it.left.T
     if plan.options["duty"] == "refrigerator":
-        section.formula("COP", "q_c / w_net", "Coefficient of performance: cooling over work at the shaft")
+        section.formula("COP", "q_c / w_net", "Coefficient of performance: cooling over work at the shaft",
+                        reference=grounds.COP)
         section.formula("COP_rev", f"{cold} / ({hot} - {cold})",
                         "The same of a reversible machine between the two sides",
                         reference="Carnot; the sides at the temperatures at which the gas leaves them")
     else:
-        section.formula("COP", "q_h / w_net", "Coefficient of performance: heat given over work at the shaft")
+        section.formula("COP", "q_h / w_net", "Coefficient of performance: heat given over work at the shaft",
+                        reference=grounds.COP)
         section.formula("COP_rev", f"{hot} / ({hot} - {cold})",
                         "The same of a reversible machine between the two sides",
                         reference="Carnot; the sides at the temperatures at which the gas leaves them")
-    section.formula("g_rev", "COP / COP_rev", "Share of the reversible machine's figure that is reached")
-    section.formula("r_w", "w_t / w_c", "Share of the compressor's work that the turbine gives back")
+    section.formula("g_rev", "COP / COP_rev", "Share of the reversible machine's figure that is reached",
+                    reference=grounds.SHARE_OF_BOUND)
+    section.formula("r_w", "w_t / w_c", "Share of the compressor's work that the turbine gives back",
+                    reference="derived: work of the turbine over that of the compressor")
     plan.facts.equals.append(Equal("w_net", "w_bal", "work by the machines and by the heats", 1e-9))
     plan.facts.bounds.append(Bound("COP", "COP_rev", "the machine does no better than the reversible one"))
 
@@ -102,9 +110,11 @@ def heat_flows(plan: Plan, it: Loop) -> None:
     """The regenerator's heat flow, and the figure with the drive's loss."""
     section = plan.section("Whole machine")
     if it.regenerates:
-        section.formula("Q_dot_reg", "m_dot * q_reg", "Heat passed on by the regenerator", "kW")
+        section.formula("Q_dot_reg", "m_dot * q_reg", "Heat passed on by the regenerator", "kW",
+                        reference=grounds.HEAT_OF_SPECIFIC)
     useful = "Q_dot_c" if plan.options["duty"] == "refrigerator" else "Q_dot_h"
-    section.formula("COP_el", f"{useful} / W_dot_el", "Coefficient of performance on the electrical power")
+    section.formula("COP_el", f"{useful} / W_dot_el", "Coefficient of performance on the electrical power",
+                    reference=grounds.COP)
     plan.facts.again.append(Again("COP_el", "COP * eta_dr", "from the figure at the shaft"))
 
 

@@ -10,8 +10,9 @@ from calcpack.plan.facts import InputNeed
 from calcpack.plan.plan import Plan
 
 HEAD = """\
-# A spec for calcpack. Every value below is typical practice, there to be replaced; a source is asked for
-# as soon as the status is no longer draft.
+# A spec for calcpack. Every value below is typical practice, there to be replaced. As soon as the status is
+# no longer draft, each value needs its source: {{value: 12 degC, source: R1}}; with a tolerance, tol: 1 K, the
+# sheet works out the uncertainty of its results.
 calcpack: 1
 sheet:
   number: XX-001                 # unique in the package
@@ -24,6 +25,10 @@ sheet:
   p_atm: 1.01325 bar             # added to gauge pressures such as 7.5 bar(g)
   units: si                      # si or us
   page: A4                       # A4 or Letter
+  # An issue also needs these:
+  # date: 2026-03-31             # of this revision
+  # grade: "2: independent check by a second engineer"
+  # codes: ["Code and year, title"]
 case:
   method: {name}
 """
@@ -33,7 +38,18 @@ assumptions:
   - id: A1
     text: The plant runs in steady state at the inputs above.
     basis: Engineering judgement.
-    status: open                 # an open assumption is a hold
+    status: open                 # an open assumption is a hold, confirmed is none
+    # effect: What changes if it does not hold.
+    # owner: Who confirms it
+    # due: 2026-03-31
+# An issue also needs what follows; who checked and approved comes from the review file.
+# references:
+#   - {id: R1, text: "Title of the document, its revision or date, page"}
+# revisions:
+#   - {revision: A, date: 2026-03-31, note: First issue, by: A. Example}
+# A limit of your own, as many as the case has:
+# limits:
+#   - {id: L1, symbol: SYMBOL, at_most: 90 degC, why: What happens beyond it., source: R1}
 """
 
 OWN_STEPS = """\

@@ -4,6 +4,7 @@ from __future__ import annotations
 from calcpack.methods import ladders
 from calcpack.methods.steam_flows import ALL, Shares, condenser_inflows, pumps_of
 from calcpack.methods.steam_states import Water
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.exchanger import Exchanger, Zone, conductance, profile, require_pinch
 from calcpack.plan.equipment.streams import Stream, balance, line
 from calcpack.plan.facts import Again, Bound, Box, Diagram, Flow, Link, Sketch, Volume
@@ -19,10 +20,11 @@ def condenser(plan: Plan, water: Water, found: Shares, sink: Stream) -> None:
     if len(inflows) > 1:
         share = "" if found.feed[last] == ALL else f" / {found.feed[last]}"
         into = section.formula("h_ci", f"{cold.h} + q_c{share}", "Mean enthalpy of all that enters the condenser",
-                               "kJ/kg")
+                               "kJ/kg", reference="energy balance of the condenser, heat over the condensate's flow")
         T_into = section.property("T_ci", "T(wf, p=p_c, h=h_ci)", "Temperature of all that enters the condenser, mixed")
     section.property("h_g_c", "h(wf, p=p_c, x=1)", "Enthalpy of the dry vapour at the condensing pressure")
-    section.formula("h_cv", f"min({into}, h_g_c)", "Enthalpy at which condensation begins", "kJ/kg")
+    section.formula("h_cv", f"min({into}, h_g_c)", "Enthalpy at which condensation begins", "kJ/kg",
+                    reference=grounds.ONSET)
     section.property("T_cv", "T(wf, p=p_c, h=h_cv)", "Temperature at which condensation begins")
     balance(section, sink, "Q_dot_c")
     it = Exchanger("Condenser", "c", "wf", "p_c", found.flow(found.feed[last]), "Q_dot_c", sink, (
@@ -38,7 +40,8 @@ def bound(plan: Plan, water: Water, found: Shares) -> None:
     """Carnot's relation with the hottest steam, and with the mean temperature at which heat is taken."""
     section = plan.section("Reversible bound")
     hottest = ", ".join([water.boiler_out.T, *(hot.T for hot in water.hot.values())])
-    section.formula("T_max", f"max({hottest})" if water.hot else hottest, "Highest temperature of the steam", "degC")
+    section.formula("T_max", f"max({hottest})" if water.hot else hottest, "Highest temperature of the steam", "degC",
+                    reference="derived: the hottest of the states at the turbine inlets")
     section.formula("eta_C", "1 - T_c / T_max",
                     "Efficiency of a reversible engine between highest and condensing temperature",
                     reference="Carnot: absolute temperatures")
@@ -54,9 +57,11 @@ def bound(plan: Plan, water: Water, found: Shares) -> None:
     section.formula("T_m_in", f"q_in / ({' + '.join(gains)})", "Entropic mean temperature of the heat taken", "degC",
                     reference="heat taken over the entropy that it brings up to the turbine inlets")
     section.formula("eta_m", "1 - T_c / T_m_in",
-                    "Efficiency of a reversible engine between this mean and the condensing temperature")
+                    "Efficiency of a reversible engine between this mean and the condensing temperature",
+                    reference="Carnot's relation with the entropic mean temperature")
     section.formula("g_rev", "eta_th / eta_m", "Share of that efficiency which the plant reaches",
-                    note="1 for a plant without losses and with saturated or wet exhaust")
+                    note="1 for a plant without losses and with saturated or wet exhaust",
+                    reference=grounds.SHARE_OF_BOUND)
 
 
 def facts(plan: Plan, water: Water, found: Shares, sink: Stream | None) -> None:

@@ -4,6 +4,7 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 
 from calcpack.methods.steam_states import Water
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.machines import state
 from calcpack.plan.facts import Equal
 from calcpack.plan.plan import Plan, Section
@@ -71,10 +72,11 @@ def _process(plan: Plan, water: Water, found: Shares) -> None:
     plan.demand(f"p_ret >= {into}", "the returned water has not the pressure to enter the plant",
                 "raise p_ret to at least the pressure of the " + (f"open heater {place}" if place else "condenser"))
     section.formula("q_pr", f"{tap.h} - h_back", "Heat that a kilogram of process steam leaves with the process",
-                    "kJ/kg")
+                    "kJ/kg", reference="energy balance of the process: steam less what comes back")
     plan.demand("q_pr > 0 kJ/kg", "the process steam carries no heat to the process", "lower T_ret")
     if plan.options["process"] == "heat":
-        section.formula("y_pr", "Q_dot_pr / (m_dot_1 * q_pr)", "Share of the steam that goes to the process")
+        section.formula("y_pr", "Q_dot_pr / (m_dot_1 * q_pr)", "Share of the steam that goes to the process",
+                        reference="energy balance of the process, solved for the share")
     found.taken["p_pr"] = "y_pr"
 
 
@@ -90,7 +92,7 @@ def _heater(plan: Plan, section: Section, water: Water, found: Shares, heater: i
         _trap(section, water, found, heater)
     else:
         section.formula(f"y_{heater}", _times(found.feed[heater], f"z_{heater}"),
-                        f"Share of the steam to heater {heater}")
+                        f"Share of the steam to heater {heater}", reference=f"energy balance of heater {heater}")
         found.drain[heater] = f"y_{heater}"
         _less(section, found, heater, f"y_{heater}")
     found.taken[f"p_x{heater}"] = f"y_{heater}"
@@ -147,7 +149,7 @@ def _trap_share(section: Section, water: Water, found: Shares, heater: int, into
 
 def _drains(section: Section, found: Shares, heater: int, above: tuple[str, str] | None) -> None:
     found.drain[heater] = f"y_{heater}" if above is None else section.formula(
-        f"f_d{heater}", f"y_{heater} + {above[0]}", f"Share of the drains of heater {heater}")
+        f"f_d{heater}", f"y_{heater} + {above[0]}", f"Share of the drains of heater {heater}", reference=grounds.MASS)
 
 
 def _coupled(section: Section, water: Water, found: Shares, heater: int) -> None:
@@ -159,12 +161,12 @@ def _coupled(section: Section, water: Water, found: Shares, heater: int) -> None
     share, above = found.feed[heater], _drained(water, found, heater)
     first = _times(share, f"({out} - {low_out})") + (f" - {above[0]} * ({above[1]} - {drain})" if above else "")
     section.formula(f"f_d{heater}0", f"({first}) / ({tap} - {drain})" + (f" + {above[0]}" if above else ""),
-                    f"Share of the drains of heater {heater}, were the drains of heater {below} not mixed in before it")
+                    f"Share of the drains of heater {heater}, were the drains of heater {below} not mixed in before it",
+                    reference=f"energy balance of heater {heater}")
     heated = f"({low_out} - {low_in})"
     section.formula(f"f_d{below}",
                     f"({_times(share, heated)} + ({low_tap} - {drain}) * f_d{heater}0) / (({low_tap} - {low_drain}) + "
-                    f"{heated}"
-                    f" + ({low_tap} - {drain}) * ({pumped} - {low_out}) / ({tap} - {drain}))",
+                    f"{heated} + ({low_tap} - {drain}) * ({pumped} - {low_out}) / ({tap} - {drain}))",
                     f"Share of the drains that heater {below} pumps forward",
                     reference=f"energy balances of heaters {heater} and {below}, solved together")
     mixed = water.after[below]
@@ -196,7 +198,8 @@ def _turbine_parts(plan: Plan, water: Water, found: Shares) -> None:
         if station.kind != "reheat":
             left += f" - {found.taken[station.pressure]}"
             share = section.formula(f"f_t{number}", left,
-                                    f"Share of the steam that stays in the turbine behind {station.name}")
+                                    f"Share of the steam that stays in the turbine behind {station.name}",
+                                    reference="mass balance of the turbine")
             plan.demand(f"{share} > 0", f"the extractions take more steam than there is: nothing is left behind "
                                         f"{station.name}",
                         "take less steam for the process, lower extraction pressures, or leave a heater out")
@@ -216,25 +219,27 @@ def specific(plan: Plan, water: Water, found: Shares) -> None:
     section = plan.section("Work and heat a kilogram of steam at the turbine inlet")
     works = [_times(share, one.work) for share, one in zip(found.part, water.expansions, strict=True)]
     section.formula("w_t", " + ".join(works), "Work of the turbine", "kJ/kg",
-                    reference="fall of enthalpy of each part by what passes it" if len(works) > 1 else "")
+                    reference="fall of enthalpy of each part by what passes it")
     pumps = [_times(share, work) for work, share, _, _ in pumps_of(water, found)]
     if pumps != ["w_p"]:
-        section.formula("w_p", " + ".join(pumps), "Work of the pumps", "kJ/kg")
+        section.formula("w_p", " + ".join(pumps), "Work of the pumps", "kJ/kg", reference=grounds.SUM)
     name = "q_b" if water.cold else "q_in"
-    heat = [section.formula(name, f"{water.boiler_out.h} - {water.feedwater.h}", "Heat taken in the boiler", "kJ/kg")]
+    heat = [section.formula(name, f"{water.boiler_out.h} - {water.feedwater.h}", "Heat taken in the boiler", "kJ/kg",
+                            reference=grounds.HEAT_OF_KILOGRAM)]
     for number, cold in water.cold.items():
         share = found.part[_expansion_after(water, number)]
         reheat = f"({water.hot[number].h} - {cold.h}" + (" + q_l_rh)" if water.losses else ")")
         heat.append(section.formula(f"q_rh{number}", _times(share, reheat), f"Heat taken in reheater {number}",
-                                    "kJ/kg"))
+                                    "kJ/kg", reference=grounds.HEAT_OF_KILOGRAM))
     if len(heat) > 1:
-        section.formula("q_in", " + ".join(heat), "Heat taken in all", "kJ/kg")
+        section.formula("q_in", " + ".join(heat), "Heat taken in all", "kJ/kg", reference=grounds.SUM)
     section.formula("q_c", _condenser_heat(water, found), "Heat given up in the condenser", "kJ/kg",
                     reference="energy balance of the condenser")
     if water.losses:
         reheated = [_times(found.part[_expansion_after(water, number)], "q_l_rh") for number in water.cold]
-        section.formula("q_l", " + ".join(["q_l_main", *reheated]), "Heat lost by the steam lines", "kJ/kg")
-    section.formula("w_net", "w_t - w_p", "Net work at the shafts", "kJ/kg")
+        section.formula("q_l", " + ".join(["q_l_main", *reheated]), "Heat lost by the steam lines", "kJ/kg",
+                        reference=grounds.SUM)
+    section.formula("w_net", "w_t - w_p", "Net work at the shafts", "kJ/kg", reference=grounds.NET_WORK)
     plan.demand("w_net > 0 kJ/kg", "the plant gives no work", "pumps draw all that the turbine makes")
 
 
@@ -277,35 +282,53 @@ def power(plan: Plan, water: Water, found: Shares) -> None:
     section = plan.section("Flow, powers and efficiency")
     if plan.options["size_by"] == "power":
         section.formula("w_el", "w_t * eta_gen - w_p / eta_pm",
-                        "Electrical work a kilogram, generator less pump motors", "kJ/kg")
+                        "Electrical work a kilogram, generator less pump motors", "kJ/kg", reference=grounds.NET_POWER)
         plan.demand("w_el > 0 kJ/kg", "the plant gives no electrical work", "pumps draw all that the turbine makes")
-        section.formula("m_dot_1", "(W_dot_net + W_dot_aux) / w_el", "Mass flow of steam at the turbine inlet", "kg/s")
-    section.formula("W_dot_t", "m_dot_1 * w_t", "Shaft power of the turbine", "kW")
-    section.formula("W_dot_p", "m_dot_1 * w_p", "Shaft power of the pumps", "kW")
+        section.formula("m_dot_1", "(W_dot_net + W_dot_aux) / w_el", "Mass flow of steam at the turbine inlet", "kg/s",
+                        reference=grounds.FLOW_FOR_WORK)
+    section.formula("W_dot_t", "m_dot_1 * w_t", "Shaft power of the turbine", "kW", reference=grounds.POWER_OF_FLOW)
+    section.formula("W_dot_p", "m_dot_1 * w_p", "Shaft power of the pumps", "kW", reference=grounds.POWER_OF_FLOW)
     if plan.options["size_by"] != "power":
-        section.formula("W_dot_net", "W_dot_t * eta_gen - W_dot_p / eta_pm - W_dot_aux", "Net electrical power", "kW")
+        section.formula("W_dot_net", "W_dot_t * eta_gen - W_dot_p / eta_pm - W_dot_aux", "Net electrical power", "kW",
+                        reference=grounds.NET_POWER)
         plan.demand("W_dot_net > 0 kW", "the net power is not above zero",
                     "pumps and auxiliaries draw all that is made")
-    section.formula("Q_dot_in", "m_dot_1 * q_in", "Heat taken by water and steam", "kW")
-    section.formula("Q_dot_c", "m_dot_1 * q_c", "Heat given up in the condenser", "kW")
-    section.formula("eta_th", "W_dot_net / Q_dot_in", "Thermal efficiency on the net power")
-    section.formula("Q_dot_fuel", "Q_dot_in / eta_b", "Heat of the fuel to the boiler", "kW")
-    section.formula("HR", "Q_dot_fuel / W_dot_net", "Net heat rate on the heat of the fuel", "kJ/kWh")
-    section.formula("r_bw", "w_p / w_t", "Back-work ratio: pumps over turbine, at the shafts")
-    section.formula("b_st", "m_dot_1 / W_dot_net", "Steam rate: steam at the turbine inlet over net energy", "kg/kWh")
+    _merit(plan, section, water)
+    _flows(plan, found, water)
+
+
+def _merit(plan: Plan, section: Section, water: Water) -> None:
+    """Heats, the figures of merit, and the balance of the whole plant."""
+    section.formula("Q_dot_in", "m_dot_1 * q_in", "Heat taken by water and steam", "kW",
+                    reference=grounds.HEAT_OF_SPECIFIC)
+    section.formula("Q_dot_c", "m_dot_1 * q_c", "Heat given up in the condenser", "kW",
+                    reference=grounds.HEAT_OF_SPECIFIC)
+    section.formula("eta_th", "W_dot_net / Q_dot_in", "Thermal efficiency on the net power",
+                    reference=grounds.EFFICIENCY)
+    section.formula("Q_dot_fuel", "Q_dot_in / eta_b", "Heat of the fuel to the boiler", "kW",
+                    reference="definition of the boiler's efficiency: heat to the steam over heat of the fuel")
+    section.formula("HR", "Q_dot_fuel / W_dot_net", "Net heat rate on the heat of the fuel", "kJ/kWh",
+                    reference="definition of the heat rate: heat of the fuel over net power")
+    section.formula("r_bw", "w_p / w_t", "Back-work ratio: pumps over turbine, at the shafts",
+                    reference=grounds.BACK_WORK)
+    section.formula("b_st", "m_dot_1 / W_dot_net", "Steam rate: steam at the turbine inlet over net energy", "kg/kWh",
+                    reference="definition of the steam rate")
     out = "Q_dot_c + W_dot_t - W_dot_p"
     if water.losses:
-        section.formula("Q_dot_l", "m_dot_1 * q_l", "Heat lost by the steam lines", "kW")
+        section.formula("Q_dot_l", "m_dot_1 * q_l", "Heat lost by the steam lines", "kW",
+                        reference=grounds.HEAT_OF_SPECIFIC)
         out += " + Q_dot_l"
     if water.arranged.process:
         if plan.options["process"] != "heat":
-            section.formula("Q_dot_pr", "m_dot_1 * y_pr * q_pr", "Heat left with the process", "kW")
+            section.formula("Q_dot_pr", "m_dot_1 * y_pr * q_pr", "Heat left with the process", "kW",
+                            reference=grounds.HEAT_OF_SPECIFIC)
         section.formula("eps_u", "(W_dot_net + Q_dot_pr) / Q_dot_in",
-                        "Utilisation factor: power and process heat over heat taken")
+                        "Utilisation factor: power and process heat over heat taken",
+                        reference="definition of the utilisation factor")
         out += " + Q_dot_pr"
-    section.formula("Q_dot_out_sum", out, "Heat and work that leave, for check", "kW", note="must equal the heat taken")
+    section.formula("Q_dot_out_sum", out, "Heat and work that leave, for check", "kW", note="must equal the heat taken",
+                    reference=grounds.WHOLE)
     plan.facts.equals.append(Equal("Q_dot_in", "Q_dot_out_sum", "heat taken equals heat and work that leave", 1e-9))
-    _flows(plan, found, water)
 
 
 def _flows(plan: Plan, found: Shares, water: Water) -> None:
@@ -317,8 +340,11 @@ def _flows(plan: Plan, found: Shares, water: Water) -> None:
     for name in found.names:
         title = words.get(name) or ("Mass flow in the turbine, behind an extraction" if name.startswith("f_t") else
                                     "Mass flow of drains" if name.startswith("f_d") else "Mass flow of feedwater")
-        section.formula(found.flow(name), f"{name} * m_dot_1", title, "kg/s")
+        section.formula(found.flow(name), f"{name} * m_dot_1", title, "kg/s",
+                        reference="share times flow at the turbine inlet")
     if water.arranged.process:
         pr = found.flow("y_pr")
-        section.formula("m_dot_ret", f"f_ret * {pr}", "Mass flow of the returned condensate", "kg/s")
-        section.formula("m_dot_mu", f"(1 - f_ret) * {pr}", "Mass flow of the make-up water", "kg/s")
+        section.formula("m_dot_ret", f"f_ret * {pr}", "Mass flow of the returned condensate", "kg/s",
+                        reference="definition of the returned share")
+        section.formula("m_dot_mu", f"(1 - f_ret) * {pr}", "Mass flow of the make-up water", "kg/s",
+                        reference=grounds.MASS)

@@ -4,6 +4,7 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 
 from calcpack.methods.steam_arrangement import Arrangement, Station
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.machines import pump, saturation, state
 from calcpack.plan.facts import Flow, MachineEnds, Path, StatePoint
 from calcpack.plan.plan import Plan, Section
@@ -126,15 +127,18 @@ def pressures(plan: Plan, water: Water) -> None:
     saturation(section, "c", "wf", plan.options["condensing"], "Condensing", vapour_title="saturation")
     if not water.losses:
         return
-    section.formula("p_b", "p_1 / (1 - f_p_main)", "Pressure at the boiler outlet", "bar")
-    section.formula("p_f", "p_b / (1 - f_p_b)", "Pressure of the feedwater at the boiler inlet", "bar")
+    section.formula("p_b", "p_1 / (1 - f_p_main)", "Pressure at the boiler outlet", "bar",
+                    reference=grounds.LOSS_OF_PRESSURE)
+    section.formula("p_f", "p_b / (1 - f_p_b)", "Pressure of the feedwater at the boiler inlet", "bar",
+                    reference=grounds.LOSS_OF_PRESSURE)
     for station in water.arranged.stations:
         if station.kind == "heater":
             section.formula(f"p_h{station.index}", f"{station.pressure} * (1 - f_p_x)",
-                            f"Pressure in heater {station.index}", "bar")
+                            f"Pressure in heater {station.index}", "bar", reference=grounds.LOSS_OF_PRESSURE)
         if station.reheat:
             section.formula(f"p_hr{station.reheat}", f"{station.pressure} * (1 - f_p_rh)",
-                            f"Pressure behind reheater {station.reheat}, at the turbine", "bar")
+                            f"Pressure behind reheater {station.reheat}, at the turbine", "bar",
+                            reference=grounds.LOSS_OF_PRESSURE)
 
 
 def turbine(plan: Plan, water: Water) -> None:
@@ -200,7 +204,8 @@ def _dryness(section: Section, water: Water, here: At, part: int) -> None:
     which = f" of turbine section {part}" if water.arranged.reheats else ""
     section.property(name, f"x_eq(wf, p={here.p}, h={here.h})",
                      f"Dryness at the exhaust{which}; above 1 it is superheated")
-    section.formula(water.part_name("y_ex", part), f"max(0, 1 - {name})", f"Moisture at the exhaust{which}")
+    section.formula(water.part_name("y_ex", part), f"max(0, 1 - {name})", f"Moisture at the exhaust{which}",
+                    reference="definition of moisture: one less the dryness, none where superheated")
 
 
 def _reheated(plan: Plan, section: Section, water: Water, cold: At, number: int) -> At:

@@ -8,6 +8,7 @@ from calcpack.methods import vapour_parts as parts
 from calcpack.methods.method import Method, Option, Role
 from calcpack.methods.transcritical_facts import facts
 from calcpack.methods.vapour_states import internal_exchanger
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.exchanger import Exchanger, Zone, conductance, profile, require_pinch
 from calcpack.plan.equipment.machines import compressor, saturation, state, valve
 from calcpack.plan.equipment.streams import Stream, balance, stream
@@ -110,15 +111,17 @@ def _levels(plan: Plan, source: Stream | None) -> None:
     if plan.options["high_side"] == "optimum":
         section.optimum("p_2", "k_cycle", ("1.01 * p_crit_wf", "p_high_max"),
                         "Gas-cooler pressure of the highest coefficient of performance", "bar",
-                        note="an optimum at an end of its bounds is a limit, not a summit: see the curve")
-    section.formula("r_crit", "p_2 / p_crit_wf", "Gas-cooler pressure over the critical pressure")
+                        note="an optimum at an end of its bounds is a limit, not a summit: see the curve",
+                        reference=grounds.BEST_COP)
+    section.formula("r_crit", "p_2 / p_crit_wf", "Gas-cooler pressure over the critical pressure",
+                    reference="derived: above 1 there is no condensation")
 
 
 def _cycle(plan: Plan, section: Section, sink: Stream | None) -> None:
     outlet, inlet = exchanger_numbers(plan.options)
     where = "at the evaporator outlet" if outlet == "5" else "at the compressor inlet"
     if plan.options["suction"] == "superheated":
-        section.formula(f"T_{outlet}", "T_e + dT_sh", f"Temperature {where}", "degC")
+        section.formula(f"T_{outlet}", "T_e + dT_sh", f"Temperature {where}", "degC", reference=grounds.SUPERHEAT)
         state(section, outlet, "wf", where, p="p_e", T=f"T_{outlet}")
     else:
         state(section, outlet, "wf", where, p="p_e", x="1")
@@ -130,17 +133,20 @@ def _cycle(plan: Plan, section: Section, sink: Stream | None) -> None:
     compressor(section, "wf", "1", "2", "p_2", "f_loss")
     valve(section, "wf", inlet, "4", "p_e")
     heat = "h_2 - h_3" if plan.options["serves"] == "heating" else f"h_{outlet} - h_4"
-    section.formula("k_cycle", f"({heat}) / w_comp", "Coefficient of performance on the work of compression")
+    section.formula("k_cycle", f"({heat}) / w_comp", "Coefficient of performance on the work of compression",
+                    reference=grounds.COP)
 
 
 def _gas_cooler_outlet(plan: Plan, section: Section, sink: Stream | None) -> None:
     if plan.options["gas_cooler"] == "approach":
-        section.formula("T_3", f"{sink.name('T', 'in')} + dT_app", "Temperature after the gas cooler", "degC")
+        section.formula("T_3", f"{sink.name('T', 'in')} + dT_app", "Temperature after the gas cooler", "degC",
+                        reference=grounds.APPROACH)
     elif plan.options["gas_cooler"] == "pinch":
         inlet = sink.name("T", "in")
         section.root("T_3", "dT_min_g - dT_pinch_g", (inlet, f"{inlet} + 60 K"),
                      "Temperature after the gas cooler at which it has the wanted pinch", "degC",
-                     note="the smallest difference is found along the whole gas cooler, in the profile below")
+                     note="the smallest difference is found along the whole gas cooler, in the profile below",
+                     reference=grounds.PINCH)
     state(section, "3", "wf", "after the gas cooler", p="p_2", T="T_3")
 
 
@@ -151,11 +157,13 @@ def _gas_cooler(plan: Plan, sink: Stream | None) -> Exchanger | None:
     flow = {"sink-duty": "Q_dot_sink / (h_2 - h_3)", "source-duty": f"Q_dot_source / ({q_source})"}
     by = plan.options["size_by"]
     if by in flow:
-        section.formula("m_dot_wf", flow[by], "Mass flow of the refrigerant", "kg/s")
+        section.formula("m_dot_wf", flow[by], "Mass flow of the refrigerant", "kg/s", reference=grounds.FLOW_FOR_HEAT)
     if by != "sink-duty":
-        section.formula("Q_dot_sink", "m_dot_wf * (h_2 - h_3)", "Heat given to the sink", "kW")
+        section.formula("Q_dot_sink", "m_dot_wf * (h_2 - h_3)", "Heat given to the sink", "kW",
+                        reference=grounds.HEAT_OF_FLOW)
     if by != "source-duty":
-        section.formula("Q_dot_source", f"m_dot_wf * ({q_source})", "Heat taken from the source", "kW")
+        section.formula("Q_dot_source", f"m_dot_wf * ({q_source})", "Heat taken from the source", "kW",
+                        reference=grounds.HEAT_OF_FLOW)
     if sink is None:
         return None
     section = plan.section("Gas cooler: balance and profile")
@@ -164,7 +172,7 @@ def _gas_cooler(plan: Plan, sink: Stream | None) -> Exchanger | None:
     for index, share in enumerate((0.25, 0.5, 0.75), start=1):
         # The heat capacity swings widely near the critical point: conductance needs more than the two ends.
         section.formula(f"h_g{index}", f"h_3 + {share} * (h_2 - h_3)", f"Enthalpy at {share:.0%} of the heat",
-                        "kJ/kg")
+                        "kJ/kg", reference=grounds.PARTS_OF_HEAT)
         section.property(f"T_g{index}", f"T(wf, p=p_2, h=h_g{index})",
                          f"Temperature at {share:.0%} of the heat")
     ways = ("3", "g1", "g2", "g3", "2")
@@ -197,23 +205,27 @@ def _require(plan: Plan, sink: Stream | None) -> None:
 
 def _power(plan: Plan) -> None:
     section = plan.section("Power and coefficient of performance")
-    section.formula("W_dot_shaft", "m_dot_wf * w_comp", "Power at the compressor shaft", "kW")
+    section.formula("W_dot_shaft", "m_dot_wf * w_comp", "Power at the compressor shaft", "kW",
+                    reference=grounds.POWER_OF_FLOW)
     parts.electrical(plan, section)
-    section.formula("r_p", "p_2 / p_e", "Pressure ratio of the compressor")
-    section.formula("V_dot_1", "m_dot_wf / rho_1", "Volume flow at the compressor inlet", "m3/h")
+    section.formula("r_p", "p_2 / p_e", "Pressure ratio of the compressor", reference=grounds.PRESSURE_RATIO)
+    section.formula("V_dot_1", "m_dot_wf / rho_1", "Volume flow at the compressor inlet", "m3/h",
+                    reference=grounds.VOLUME_FLOW)
 
 
 def _published(plan: Plan) -> None:
     """Published fits of the optimum pressure beside the pressure of this sheet; nothing hangs on them."""
     section = plan.section("Published optimum pressures, for comparison")
-    section.formula("t_e", "(T_e - 273.15 K) / 1 K", "Evaporating temperature in °C, as the fits take it")
+    section.formula("t_e", "(T_e - 273.15 K) / 1 K", "Evaporating temperature in °C, as the fits take it",
+                    reference=grounds.CELSIUS)
     section.formula("t_gc", "(T_3 - 273.15 K) / 1 K",
-                    "Temperature after the gas cooler in °C, as the fits take it")
+                    "Temperature after the gas cooler in °C, as the fits take it", reference=grounds.CELSIUS)
     for symbol, formula, who, where in CORRELATIONS:
         section.formula(symbol, f"({formula}) * 1 bar", f"Optimum pressure by {who}", "bar",
                         reference=f"{who}, {where}")
         section.formula(symbol.replace("p_", "r_"), f"p_2 / {symbol}",
-                        f"Pressure of this sheet over that by {who}")
+                        f"Pressure of this sheet over that by {who}",
+                        reference="derived: pressure of this sheet over that of the fit")
 
 
 def _roles(options: Mapping[str, str]) -> tuple[Role, ...]:

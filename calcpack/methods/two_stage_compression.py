@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from calcpack.methods import vapour_parts as parts
 from calcpack.methods.method import Method, Option, Role
 from calcpack.methods.two_stage_facts import facts
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.exchanger import conductance, require_pinch
 from calcpack.plan.equipment.machines import compressor, saturation, state, valve
 from calcpack.plan.equipment.streams import Stream
@@ -83,13 +84,15 @@ def _levels(plan: Plan, source: Stream | None, sink: Stream | None) -> None:
                             reference="equal pressure ratios of both stages")
         case "optimum":
             section.optimum("p_i", "k_stages", ("1.1 * p_e", "0.9 * p_c"),
-                            "Pressure between the stages of the highest coefficient of performance", "bar")
+                            "Pressure between the stages of the highest coefficient of performance", "bar",
+                            reference=grounds.BEST_COP)
     section.property("T_i", "T(wf, p=p_i, x=1)", "Saturation temperature between the stages (dew point)")
 
 
 def _states(plan: Plan, section: Section) -> None:
     if plan.options["suction"] == "superheated":
-        section.formula("T_1", "T_e + dT_sh", "Temperature at the low stage's inlet", "degC")
+        section.formula("T_1", "T_e + dT_sh", "Temperature at the low stage's inlet", "degC",
+                        reference=grounds.SUPERHEAT)
         state(section, "1", "wf", "at the low stage's inlet", p="p_e", T="T_1")
     else:
         state(section, "1", "wf", "at the low stage's inlet", p="p_e", x="1")
@@ -97,7 +100,8 @@ def _states(plan: Plan, section: Section) -> None:
     compressor(section, "wf", "1", "2", "p_i", "f_loss", "eta_low", "w_low", "low stage")
     section.property("T_bub", "T(wf, p=p_c, x=0)", "Bubble-point temperature at the condensing pressure")
     if plan.options["liquid"] == "subcooled":
-        section.formula("T_5", "T_bub - dT_sc", "Temperature at the condenser outlet", "degC")
+        section.formula("T_5", "T_bub - dT_sc", "Temperature at the condenser outlet", "degC",
+                        reference=grounds.SUBCOOLING)
         state(section, "5", "wf", "at the condenser outlet", p="p_c", T="T_5")
     else:
         state(section, "5", "wf", "at the condenser outlet", p="p_c", x="0")
@@ -116,11 +120,13 @@ def _between(plan: Plan, section: Section) -> None:
     arrangement = plan.options["arrangement"]
     if arrangement == "closed-economiser":
         section.formula("T_7", "T_6 + dT_eco", "Temperature of the subcooled liquid", "degC",
-                        note="cooled towards the injected part as that enters the economiser")
+                        note="cooled towards the injected part as that enters the economiser",
+                        reference=grounds.APPROACH)
         if plan.options["intermediate"] != "optimum":
             _require_economiser(plan)
         state(section, "7", "wf", "of the subcooled liquid", p="p_c", T="T_7")
-        section.formula("T_9", "T_i + dT_sh_i", "Temperature of the injected vapour", "degC")
+        section.formula("T_9", "T_i + dT_sh_i", "Temperature of the injected vapour", "degC",
+                        reference=grounds.SUPERHEAT)
         state(section, "9", "wf", "of the injected vapour", p="p_i", T="T_9")
     else:
         section.property("T_bub_i", "T(wf, p=p_i, x=0)", "Bubble-point temperature between the stages")
@@ -145,7 +151,7 @@ def _duty(plan: Plan, section: Section) -> None:
     parts.duties(plan, section, "stage", sink="h_4 - h_5", source="h_1 - h_8")
     if plan.options["arrangement"] != "flash-chamber":
         section.formula("m_dot_9", "m_dot_high - m_dot_low", "Mass flow of the vapour between the stages",
-                        "kg/s")
+                        "kg/s", reference=grounds.MASS)
 
 
 def _require(plan: Plan) -> None:
@@ -169,28 +175,37 @@ def _require_economiser(plan: Plan) -> None:
 
 def _power(plan: Plan) -> None:
     section = plan.section("Power and coefficient of performance")
-    section.formula("W_dot_low", "m_dot_low * w_low", "Power at the shaft of the low stage", "kW")
-    section.formula("W_dot_high", "m_dot_high * w_high", "Power at the shaft of the high stage", "kW")
-    section.formula("W_dot_shaft", "W_dot_low + W_dot_high", "Power at both shafts", "kW")
+    section.formula("W_dot_low", "m_dot_low * w_low", "Power at the shaft of the low stage", "kW",
+                    reference=grounds.POWER_OF_FLOW)
+    section.formula("W_dot_high", "m_dot_high * w_high", "Power at the shaft of the high stage", "kW",
+                    reference=grounds.POWER_OF_FLOW)
+    section.formula("W_dot_shaft", "W_dot_low + W_dot_high", "Power at both shafts", "kW", reference=grounds.SUM)
     for tag in ("low", "high"):
-        section.formula(f"Q_dot_loss_{tag}", f"f_loss * W_dot_{tag}", f"Heat lost by the {tag} stage", "kW")
+        section.formula(f"Q_dot_loss_{tag}", f"f_loss * W_dot_{tag}", f"Heat lost by the {tag} stage", "kW",
+                        reference=grounds.LOST_HEAT)
     parts.electrical(plan, section)
-    section.formula("r_p_low", "p_i / p_e", "Pressure ratio of the low stage")
-    section.formula("r_p_high", "p_c / p_i", "Pressure ratio of the high stage")
-    section.formula("r_p", "max(r_p_low, r_p_high)", "The greater pressure ratio")
-    section.formula("V_dot_1", "m_dot_low / rho_1", "Volume flow at the low stage's inlet", "m3/h")
+    section.formula("r_p_low", "p_i / p_e", "Pressure ratio of the low stage", reference=grounds.PRESSURE_RATIO)
+    section.formula("r_p_high", "p_c / p_i", "Pressure ratio of the high stage", reference=grounds.PRESSURE_RATIO)
+    section.formula("r_p", "max(r_p_low, r_p_high)", "The greater pressure ratio",
+                    reference="derived: the stage that the limits of a machine meet first")
+    section.formula("V_dot_1", "m_dot_low / rho_1", "Volume flow at the low stage's inlet", "m3/h",
+                    reference=grounds.VOLUME_FLOW)
 
 
 def _one_stage(plan: Plan) -> None:
     """The same levels and the low stage's efficiency in one stage, to judge what the second brings."""
     section = plan.section("One stage between the same levels, for comparison")
     section.property("h_1s", "h(wf, p=p_c, s=s_1)", "Enthalpy after isentropic compression in one stage")
-    section.formula("w_one", "(h_1s - h_1) / eta_low", "Specific work of one stage", "kJ/kg")
-    section.formula("h_d_one", "h_1 + (1 - f_loss) * w_one", "Specific enthalpy after one stage", "kJ/kg")
+    section.formula("w_one", "(h_1s - h_1) / eta_low", "Specific work of one stage", "kJ/kg",
+                    reference="isentropic efficiency: isentropic work over work of compression")
+    section.formula("h_d_one", "h_1 + (1 - f_loss) * w_one", "Specific enthalpy after one stage", "kJ/kg",
+                    reference="energy balance of the compressor, its loss taken off")
     section.property("T_d_one", "T(wf, p=p_c, h=h_d_one)", "Temperature after one stage")
     heat = "h_d_one - h_5" if plan.options["serves"] == "heating" else "h_1 - h_5"
-    section.formula("k_one", f"({heat}) / w_one", "Coefficient of performance of one stage, on its work")
-    section.formula("g_stages", "k_stages / k_one - 1", "What the second stage brings, relative to one")
+    section.formula("k_one", f"({heat}) / w_one", "Coefficient of performance of one stage, on its work",
+                    reference=grounds.COP)
+    section.formula("g_stages", "k_stages / k_one - 1", "What the second stage brings, relative to one",
+                    reference="derived: figure of two stages over that of one, less one")
 
 
 def _roles(options: Mapping[str, str]) -> tuple[Role, ...]:

@@ -7,6 +7,7 @@ from calcpack.methods import vapour_parts as parts
 from calcpack.methods.method import Method, Option, Role
 from calcpack.methods.vapour_facts import facts
 from calcpack.methods.vapour_states import Route, pressures, require_exchange, route, state_inputs, states
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.exchanger import Exchanger, Zone, conductance, profile, require_pinch
 from calcpack.plan.equipment.machines import saturation
 from calcpack.plan.equipment.polynomial import polynomial_inputs, require_sound
@@ -125,33 +126,40 @@ def _require(plan: Plan, way: Route) -> None:
                     "leave less superheat after the desuperheater, or leave it out")
 
 
+FLOW_GROUNDS = {"swept-volume": "volumetric efficiency: volume flow drawn over swept volume flow",
+                "compressors": "mass balance: compressors side by side, each with the flow of one"}
+"""What the flow stands on where it does not follow from a duty."""
+
+
 def _duty(plan: Plan, way: Route, section: Section, hot: Stream | None) -> None:
     q_sink, q_source = f"h_{way.condenser_inlet} - h_3", f"h_{way.evaporator_outlet} - h_4"
     flow = {"sink-duty": f"Q_dot_sink / ({q_sink})", "source-duty": f"Q_dot_source / ({q_source})",
             "swept-volume": "eta_v * V_dot_swept * rho_1", "compressors": "n_comp * m_dot_one"}
     by = plan.options["size_by"]
     if by in flow:
-        more = {"reference": "volumetric efficiency: volume flow drawn over swept volume flow"} \
-            if by == "swept-volume" else {}
-        section.formula("m_dot_wf", flow[by], "Mass flow of the refrigerant", "kg/s", **more)
+        section.formula("m_dot_wf", flow[by], "Mass flow of the refrigerant", "kg/s",
+                        reference=FLOW_GROUNDS.get(by, grounds.FLOW_FOR_HEAT))
     if plan.options["compressor"] != "efficiency" and by != "compressors":
         section.formula("n_comp", "m_dot_wf / m_dot_one", "Number of such compressors that the flow calls for",
-                        note="a fraction is a share of the time, or of the speed where flow follows speed")
+                        note="a fraction is a share of the time, or of the speed where flow follows speed",
+                        reference="mass balance: flow of the circuit over flow of one compressor")
     if by != "sink-duty":
-        section.formula("Q_dot_sink", f"m_dot_wf * ({q_sink})", "Heat given to the sink", "kW")
+        section.formula("Q_dot_sink", f"m_dot_wf * ({q_sink})", "Heat given to the sink", "kW",
+                        reference=grounds.HEAT_OF_FLOW)
     if by != "source-duty":
-        section.formula("Q_dot_source", f"m_dot_wf * ({q_source})", "Heat taken from the source", "kW")
+        section.formula("Q_dot_source", f"m_dot_wf * ({q_source})", "Heat taken from the source", "kW",
+                        reference=grounds.HEAT_OF_FLOW)
     if way.warmed:
         section.formula("Q_dot_line", f"m_dot_wf * (h_1 - h_{way.line_inlet})",
-                        "Heat taken up by the suction line from its surroundings", "kW")
+                        "Heat taken up by the suction line from its surroundings", "kW", reference=grounds.HEAT_OF_FLOW)
     if way.exchanger:
         section.formula("Q_dot_ihx", f"m_dot_wf * (h_{way.line_inlet} - h_5)",
                         "Heat exchanged in the internal exchanger",
-                        "kW")
+                        "kW", reference=grounds.HEAT_OF_FLOW)
     if hot:
         section.formula("Q_dot_hot", f"m_dot_wf * (h_{way.discharge} - h_8)", "Heat given to the hot stream",
-                        "kW")
-        section.formula("Q_dot_heat", "Q_dot_sink + Q_dot_hot", "Heat given to both sinks", "kW")
+                        "kW", reference=grounds.HEAT_OF_FLOW)
+        section.formula("Q_dot_heat", "Q_dot_sink + Q_dot_hot", "Heat given to both sinks", "kW", reference=grounds.SUM)
 
 
 def _desuperheater(plan: Plan, way: Route, hot: Stream) -> Exchanger:
@@ -166,10 +174,13 @@ def _desuperheater(plan: Plan, way: Route, hot: Stream) -> Exchanger:
 
 def _power(plan: Plan, way: Route) -> None:
     section = plan.section("Power and coefficient of performance")
-    section.formula("W_dot_shaft", "m_dot_wf * w_comp", "Power at the compressor shaft", "kW")
+    section.formula("W_dot_shaft", "m_dot_wf * w_comp", "Power at the compressor shaft", "kW",
+                    reference=grounds.POWER_OF_FLOW)
     parts.electrical(plan, section, heating="Q_dot_heat" if way.hot else "Q_dot_sink")
-    section.formula("r_p", f"{way.p('2')} / {way.p('1')}", "Pressure ratio of the compressor")
-    section.formula("V_dot_1", "m_dot_wf / rho_1", "Volume flow at the compressor inlet", "m3/h")
+    section.formula("r_p", f"{way.p('2')} / {way.p('1')}", "Pressure ratio of the compressor",
+                    reference=grounds.PRESSURE_RATIO)
+    section.formula("V_dot_1", "m_dot_wf / rho_1", "Volume flow at the compressor inlet", "m3/h",
+                    reference=grounds.VOLUME_FLOW)
 
 
 def _roles(options: Mapping[str, str]) -> tuple[Role, ...]:

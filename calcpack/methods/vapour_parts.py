@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from calcpack.errors import Fault, SpecError
 from calcpack.methods import ladders
 from calcpack.methods.method import Option, Role
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.exchanger import Exchanger, Zone, profile
 from calcpack.plan.equipment.streams import Stream, balance, entropic_mean, inlet_state, stream
 from calcpack.plan.facts import Bound, Flow, Link, Volume
@@ -146,7 +147,8 @@ def level(plan: Plan, section: Section, tag: str, side: str, it: Stream | None, 
         low = f"max({low}, {least} + 0.1 K)"
     section.root(f"T_{tag}", f"dT_min_{tag} - dT_pinch_{tag}", (low, high),
                  f"{side.capitalize()} temperature at which the {word} has the wanted pinch", "degC",
-                 note="the smallest difference is found along the whole exchanger, in the profile below")
+                 note="the smallest difference is found along the whole exchanger, in the profile below",
+                 reference=grounds.PINCH)
 
 
 def _bracket(it: Stream, tag: str, critical: str, far: int | None) -> tuple[str, str]:
@@ -219,9 +221,11 @@ def require_lift(plan: Plan) -> None:
 def electrical(plan: Plan, section: Section, heating: str = "Q_dot_sink") -> None:
     """Loss, electrical powers and coefficient of performance from the shaft power ``W_dot_shaft``."""
     section.formula("Q_dot_loss", "f_loss * W_dot_shaft", "Heat lost by the compressor to its surroundings",
-                    "kW")
-    section.formula("W_dot_el", "W_dot_shaft / (eta_drive * eta_motor)", "Electrical power of the motor", "kW")
-    section.formula("W_dot_net", "W_dot_el + W_dot_aux", "Electrical power drawn in all", "kW")
+                    "kW", reference=grounds.LOST_HEAT)
+    section.formula("W_dot_el", "W_dot_shaft / (eta_drive * eta_motor)", "Electrical power of the motor", "kW",
+                    reference=grounds.DRIVE)
+    section.formula("W_dot_net", "W_dot_el + W_dot_aux", "Electrical power drawn in all", "kW",
+                    reference=grounds.NET_POWER)
     word = plan.options["serves"]
     useful = heating if word == "heating" else "Q_dot_source"
     section.formula("COP", f"{useful} / W_dot_net", f"Coefficient of performance, {word}",
@@ -249,7 +253,8 @@ def bound(plan: Plan, source: Stream, sink: Stream, hot: Stream | None = None, *
     section.formula("COP_rev", f"{wanted} / ({upper} - T_m_source)",
                     "Coefficient of performance of a reversible machine",
                     reference="Lorenz: Carnot's relation with the entropic mean temperatures of the streams")
-    section.formula("g_rev", "COP / COP_rev", "Share of the reversible bound that the machine reaches")
+    section.formula("g_rev", "COP / COP_rev", "Share of the reversible bound that the machine reaches",
+                    reference=grounds.SHARE_OF_BOUND)
     if law:
         plan.facts.bounds.append(Bound("COP", "COP_rev",
                                        "the coefficient of performance stays below the reversible one"))
@@ -278,15 +283,21 @@ def duties(plan: Plan, section: Section, word: str, sink: str, source: str) -> N
     """
     match plan.options["size_by"]:
         case "sink-duty":
-            section.formula("m_dot_high", f"Q_dot_sink / ({sink})", f"Mass flow of the high {word}", "kg/s")
-            section.formula("m_dot_low", "m_dot_high / r_m", f"Mass flow of the low {word}", "kg/s")
+            section.formula("m_dot_high", f"Q_dot_sink / ({sink})", f"Mass flow of the high {word}", "kg/s",
+                            reference=grounds.FLOW_FOR_HEAT)
+            section.formula("m_dot_low", "m_dot_high / r_m", f"Mass flow of the low {word}", "kg/s",
+                            reference="definition of the flow ratio, solved for the low side")
         case "source-duty":
-            section.formula("m_dot_low", f"Q_dot_source / ({source})", f"Mass flow of the low {word}", "kg/s")
+            section.formula("m_dot_low", f"Q_dot_source / ({source})", f"Mass flow of the low {word}", "kg/s",
+                            reference=grounds.FLOW_FOR_HEAT)
     if plan.options["size_by"] != "sink-duty":
-        section.formula("m_dot_high", "r_m * m_dot_low", f"Mass flow of the high {word}", "kg/s")
-        section.formula("Q_dot_sink", f"m_dot_high * ({sink})", "Heat given to the sink", "kW")
+        section.formula("m_dot_high", "r_m * m_dot_low", f"Mass flow of the high {word}", "kg/s",
+                        reference="definition of the flow ratio, solved for the high side")
+        section.formula("Q_dot_sink", f"m_dot_high * ({sink})", "Heat given to the sink", "kW",
+                        reference=grounds.HEAT_OF_FLOW)
     if plan.options["size_by"] != "source-duty":
-        section.formula("Q_dot_source", f"m_dot_low * ({source})", "Heat taken from the source", "kW")
+        section.formula("Q_dot_source", f"m_dot_low * ({source})", "Heat taken from the source", "kW",
+                        reference=grounds.HEAT_OF_FLOW)
 
 
 def stream_links(name: str, it: Stream | None, box: str) -> list[Link]:

@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from calcpack.methods import ladders
 from calcpack.methods import vapour_parts as parts
 from calcpack.methods.method import Method, Option, Role
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.machines import compressor, state
 from calcpack.plan.facts import Bound, Box, Diagram, Equal, Flow, Link, Path, Sketch, StatePoint, Volume
 from calcpack.plan.plan import Plan, Section
@@ -72,7 +73,7 @@ def _vapour(plan: Plan, section: Section) -> None:
     section.property("h_v", "h(wf, p=p_v, T=T_b)",
                      "Specific enthalpy of the vapour, superheated by the elevation")
     section.property("s_v", "s(wf, p=p_v, T=T_b)", "Specific entropy of that vapour")
-    section.formula("p_1", "p_v - dp_v", "Pressure at the compressor inlet", "bar")
+    section.formula("p_1", "p_v - dp_v", "Pressure at the compressor inlet", "bar", reference=grounds.DROP)
     plan.demand("p_1 > 0 bar", "the pressure drop is not less than the pressure above the solution",
                 "give a smaller pressure drop")
     section.formula("h_1", "h_v", "Specific enthalpy at the compressor inlet", "kJ/kg",
@@ -82,7 +83,8 @@ def _vapour(plan: Plan, section: Section) -> None:
 
 
 def _compression(plan: Plan, section: Section) -> None:
-    section.formula("T_c", "T_b + dT_hs", "Condensing temperature at the heating surface", "degC")
+    section.formula("T_c", "T_b + dT_hs", "Condensing temperature at the heating surface", "degC",
+                    reference=grounds.APPROACH)
     section.property("p_c", "p(wf, T=T_c, x=1)", "Condensing pressure")
     compressor(section, "wf", "1", "2", "p_c", "f_loss")
     state(section, "4", "wf", "of the condensate", p="p_c", x="0")
@@ -100,10 +102,13 @@ def _flows(plan: Plan, section: Section) -> None:
     else:
         section.formula("m_dot_feed", f"m_dot_v / ({share})", "Mass flow of the feed", "kg/s",
                         reference="balance of the solids")
-    section.formula("m_dot_conc", "m_dot_feed - m_dot_v", "Mass flow of the concentrate", "kg/s")
+    section.formula("m_dot_conc", "m_dot_feed - m_dot_v", "Mass flow of the concentrate", "kg/s",
+                    reference=grounds.MASS)
     if plan.options["desuperheating"] == "injection":
-        section.formula("m_dot_inj", "r_inj * m_dot_v", "Mass flow of the condensate sprayed in", "kg/s")
-        section.formula("m_dot_h", "m_dot_v + m_dot_inj", "Mass flow at the heating surface", "kg/s")
+        section.formula("m_dot_inj", "r_inj * m_dot_v", "Mass flow of the condensate sprayed in", "kg/s",
+                        reference="flow ratio of the energy balance of the injection")
+        section.formula("m_dot_h", "m_dot_v + m_dot_inj", "Mass flow at the heating surface", "kg/s",
+                        reference=grounds.MASS)
 
 
 def _feed(plan: Plan, section: Section) -> None:
@@ -118,21 +123,25 @@ def _feed(plan: Plan, section: Section) -> None:
                     reference="constant heat capacity up to the boiling temperature")
     if plan.options["preheating"] == "none":
         return
-    section.formula("T_5", "T_feed + dT_pre", "Temperature of the condensate after the preheater", "degC")
+    section.formula("T_5", "T_feed + dT_pre", "Temperature of the condensate after the preheater", "degC",
+                    reference=grounds.APPROACH)
     plan.demand("T_5 < T_c", "the condensate has nothing to give to the feed",
                 "take a smaller difference in the preheater, or set preheating to none")
     state(section, "5", "wf", "of the condensate after the preheater", p="p_c", T="T_5")
-    section.formula("Q_dot_pre", "m_dot_v * (h_4 - h_5)", "Heat exchanged in the preheater", "kW")
+    section.formula("Q_dot_pre", "m_dot_v * (h_4 - h_5)", "Heat exchanged in the preheater", "kW",
+                    reference=grounds.HEAT_OF_FLOW)
     section.formula("h_pre", "h_feed + Q_dot_pre / m_dot_feed", "Specific enthalpy of the preheated feed",
                     "kJ/kg",
                     reference="energy balance of the preheater")
     section.formula("T_pre", "T_feed + Q_dot_pre / (m_dot_feed * cp_feed)", "Temperature of the preheated feed",
-                    "degC")
+                    "degC", reference="energy balance of the feed, constant heat capacity")
     plan.demand("T_pre < T_c and T_pre <= T_b", "the preheater would warm the feed beyond what is possible",
                 "take a greater difference in the preheater, or check the heat capacity of the feed")
     section.formula("s_pre", "s_b - cp_feed * ln(T_b / T_pre)", "Specific entropy of the preheated feed",
-                    "kJ/(kg·K)")
-    section.formula("dT_pre_hot", "T_c - T_pre", "Temperature difference at the preheater's warm end", "K")
+                    "kJ/(kg·K)",
+                    reference="constant heat capacity: Δs = cp ln(T ratio), pressure without effect on a liquid")
+    section.formula("dT_pre_hot", "T_c - T_pre", "Temperature difference at the preheater's warm end", "K",
+                    reference=grounds.TWO_SIDES)
 
 
 def _heat(plan: Plan, section: Section) -> None:
@@ -141,31 +150,38 @@ def _heat(plan: Plan, section: Section) -> None:
                     "Heat that the evaporator needs", "kW", reference="energy balance of the solution")
     warm, flow = ("h_3", "m_dot_h") if plan.options["desuperheating"] == "injection" else ("h_2", "m_dot_v")
     section.formula("Q_dot_hs", f"{flow} * ({warm} - h_4)", "Heat of the compressed vapour as it condenses",
-                    "kW")
+                    "kW", reference=grounds.HEAT_OF_FLOW)
     section.formula("Q_dot_add", "Q_dot_need - Q_dot_hs",
                     "Heat to be added from outside; below zero it is left over",
                     "kW",
-                    note="added as live steam or by another preheater; what is left over is vented or lost")
+                    note="added as live steam or by another preheater; what is left over is vented or lost",
+                    reference="energy balance of the evaporator")
     section.formula("Q_dot_parts", f"m_dot_v * (h_v - h_b) + m_dot_feed * (h_b - {feed})",
                     "Heat needed by its parts: evaporation and warming of the feed, for check", "kW",
-                    note="must equal the heat that the evaporator needs")
+                    note="must equal the heat that the evaporator needs", reference=grounds.WHOLE)
     plan.facts.equals.append(Equal("Q_dot_need", "Q_dot_parts",
                                    "heat of the evaporator by balance and by its parts"))
 
 
 def _power(plan: Plan) -> None:
     section = plan.section("Power and its yield")
-    section.formula("W_dot_shaft", "m_dot_v * w_comp", "Power at the compressor shaft", "kW")
+    section.formula("W_dot_shaft", "m_dot_v * w_comp", "Power at the compressor shaft", "kW",
+                    reference=grounds.POWER_OF_FLOW)
     section.formula("Q_dot_loss", "f_loss * W_dot_shaft", "Heat lost by the compressor to its surroundings",
-                    "kW")
-    section.formula("W_dot_el", "W_dot_shaft / (eta_drive * eta_motor)", "Electrical power of the motor", "kW")
-    section.formula("W_dot_net", "W_dot_el + W_dot_aux", "Electrical power drawn in all", "kW")
-    section.formula("e_v", "W_dot_net / m_dot_v", "Electrical work for a kilogram of evaporated water", "kJ/kg")
+                    "kW", reference=grounds.LOST_HEAT)
+    section.formula("W_dot_el", "W_dot_shaft / (eta_drive * eta_motor)", "Electrical power of the motor", "kW",
+                    reference=grounds.DRIVE)
+    section.formula("W_dot_net", "W_dot_el + W_dot_aux", "Electrical power drawn in all", "kW",
+                    reference=grounds.NET_POWER)
+    section.formula("e_v", "W_dot_net / m_dot_v", "Electrical work for a kilogram of evaporated water", "kJ/kg",
+                    reference="derived: power over flow of evaporated water")
     section.formula("COP", "Q_dot_hs / W_dot_net",
-                    "Coefficient of performance: heat at the heating surface over power")
-    section.formula("r_p", "p_c / p_1", "Pressure ratio of the compressor")
-    section.formula("dT_lift", "T_c - T_v", "Rise of the saturation temperature, with elevation", "K")
-    section.formula("V_dot_1", "m_dot_v / rho_1", "Volume flow at the compressor inlet", "m3/h")
+                    "Coefficient of performance: heat at the heating surface over power", reference=grounds.COP)
+    section.formula("r_p", "p_c / p_1", "Pressure ratio of the compressor", reference=grounds.PRESSURE_RATIO)
+    section.formula("dT_lift", "T_c - T_v", "Rise of the saturation temperature, with elevation", "K",
+                    reference="derived: condensing temperature less that of the vapour's saturation")
+    section.formula("V_dot_1", "m_dot_v / rho_1", "Volume flow at the compressor inlet", "m3/h",
+                    reference=grounds.VOLUME_FLOW)
 
 
 def _bound(plan: Plan, section: Section) -> None:
@@ -182,7 +198,8 @@ def _bound(plan: Plan, section: Section) -> None:
     section.formula("COP_rev", "T_m_warm / (T_m_warm - T_m_cold)",
                     "Coefficient of performance of a reversible machine",
                     reference="Carnot's relation with entropic mean temperatures")
-    section.formula("g_rev", "COP / COP_rev", "Share of the reversible bound that the plant reaches")
+    section.formula("g_rev", "COP / COP_rev", "Share of the reversible bound that the plant reaches",
+                    reference=grounds.SHARE_OF_BOUND)
     plan.facts.bounds.append(Bound("COP", "COP_rev",
                                    "the coefficient of performance stays below the reversible one"))
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass
 
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.machines import compressor, state, valve
 from calcpack.plan.equipment.polynomial import polynomial_compressor
 from calcpack.plan.plan import Plan, Section
@@ -108,7 +109,7 @@ def pressures(section: Section, way: Route) -> None:
             ("p_4", "p_e + dp_e", "Pressure at the evaporator inlet"),
             ("p_2", "p_c + dp_dis", "Pressure at the compressor outlet"),
             ("p_3", "p_c - dp_c", "Pressure at the condenser outlet")):
-        section.formula(symbol, formula, title, "bar")
+        section.formula(symbol, formula, title, "bar", reference=grounds.DROP)
 
 
 def states(plan: Plan, section: Section, way: Route) -> None:
@@ -132,7 +133,8 @@ def states(plan: Plan, section: Section, way: Route) -> None:
     if way.losses:
         valve(section, "wf", "2", "9", "p_c", "after the discharge line", "energy balance of an adiabatic line")
     if way.hot:
-        section.formula("T_8", "T_c + dT_left", "Temperature after the desuperheater", "degC")
+        section.formula("T_8", "T_c + dT_left", "Temperature after the desuperheater", "degC",
+                        reference=grounds.SUPERHEAT)
         state(section, "8", "wf", "after the desuperheater", p="p_c", T="T_8")
 
 
@@ -140,7 +142,7 @@ def _evaporator_outlet(plan: Plan, section: Section, way: Route) -> None:
     number = way.evaporator_outlet
     where = "at the compressor inlet" if number == "1" else "at the evaporator outlet"
     if plan.options["suction"] == "superheated":
-        section.formula(f"T_{number}", "T_e + dT_sh", f"Temperature {where}", "degC")
+        section.formula(f"T_{number}", "T_e + dT_sh", f"Temperature {where}", "degC", reference=grounds.SUPERHEAT)
         state(section, number, "wf", where, p="p_e", T=f"T_{number}")
     else:
         state(section, number, "wf", where, p="p_e", x="1")
@@ -150,7 +152,8 @@ def _condenser_outlet(plan: Plan, section: Section, way: Route) -> None:
     p = way.p("3")
     section.property("T_bub", f"T(wf, p={p}, x=0)", "Bubble-point temperature at the condensing pressure")
     if plan.options["liquid"] == "subcooled":
-        section.formula("T_3", "T_bub - dT_sc", "Temperature at the condenser outlet", "degC")
+        section.formula("T_3", "T_bub - dT_sc", "Temperature at the condenser outlet", "degC",
+                        reference=grounds.SUBCOOLING)
         state(section, "3", "wf", "at the condenser outlet", p=p, T="T_3")
     else:
         state(section, "3", "wf", "at the condenser outlet", p=p, x="0")
@@ -174,9 +177,9 @@ def internal_exchanger(section: Section, fluid: str, *, vapour: tuple[str, str],
                     reference="energy balance of the internal exchanger, equal flows")
     state(section, cooled, fluid, f"of the {word} after the internal exchanger", p=p_liquid, h=f"h_{cooled}")
     section.formula("dT_ihx_hot", f"T_{warm} - T_{warmed}",
-                    "Temperature difference at the exchanger's warm end", "K")
+                    "Temperature difference at the exchanger's warm end", "K", reference=grounds.TWO_SIDES)
     section.formula("dT_ihx_cold", f"T_{cooled} - T_{cold}",
-                    "Temperature difference at the exchanger's cold end", "K")
+                    "Temperature difference at the exchanger's cold end", "K", reference=grounds.TWO_SIDES)
 
 
 def require_exchange(plan: Plan) -> None:
@@ -190,7 +193,8 @@ def require_exchange(plan: Plan) -> None:
 def _suction_line(section: Section, way: Route) -> None:
     before, p = way.line_inlet, way.p("1")
     if way.warmed:
-        section.formula("T_1", f"T_{before} + dT_line", "Temperature at the compressor inlet", "degC")
+        section.formula("T_1", f"T_{before} + dT_line", "Temperature at the compressor inlet", "degC",
+                        reference="definition of dT_line: temperature behind the line less that before it")
         state(section, "1", "wf", "at the compressor inlet", p=p, T="T_1")
     else:
         valve(section, "wf", before, "1", p, "at the compressor inlet", "energy balance of an adiabatic line")
@@ -206,8 +210,10 @@ def _polynomial(plan: Plan, way: Route) -> None:
                                              f"Dew-point temperature at the compressor {word}")
     saturated = levels[0]
     if plan.options["polynomial_levels"] == "mid":
-        levels = [section.formula("T_mid_e", "(T_4 + T_e) / 2", "Mean temperature of evaporation", "degC"),
-                  section.formula("T_mid_c", "(T_bub + T_c) / 2", "Mean temperature of condensation", "degC")]
+        levels = [section.formula("T_mid_e", "(T_4 + T_e) / 2", "Mean temperature of evaporation", "degC",
+                                  reference=grounds.MIDDLE),
+                  section.formula("T_mid_c", "(T_bub + T_c) / 2", "Mean temperature of condensation", "degC",
+                                  reference=grounds.MIDDLE)]
     polynomial_compressor(section, "wf", "1", "2", plan.options["compressor"], dew=(levels[0], levels[1]),
                           saturated=saturated,
                           pressures=(way.p("1"), way.p("2")), loss="f_loss")

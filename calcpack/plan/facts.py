@@ -28,6 +28,13 @@ class InputNeed:
     default: str | None = None
     note: str = ""
 
+    @property
+    def bounds(self) -> str:
+        """The limits in words, such as 'above 0 to 1'; empty where there are none."""
+        low = self.low and f"{'above' if self.low_open else 'from'} {self.low}"
+        high = self.high and (f"to {self.high}" if low else f"up to {self.high}")
+        return " ".join(word for word in (low, high) if word)
+
 
 @dataclass(frozen=True, slots=True)
 class StatePoint:

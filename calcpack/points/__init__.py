@@ -10,7 +10,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
-from calcpack.points import judged_basis, judged_formal, judged_working
+from calcpack.points import judged_basis, judged_formal, judged_issue, judged_review, judged_working
 from calcpack.points.catalogue import CATALOGUE
 from calcpack.points.point import PERSON, UNMET, Point, View
 from calcpack.render.pages import Extras
@@ -18,7 +18,8 @@ from calcpack.reread.from_print import Redone
 
 __all__ = ["Point", "View", "points", "unmet"]
 
-JUDGES = judged_basis.JUDGES | judged_working.JUDGES | judged_formal.JUDGES
+JUDGES = (judged_basis.JUDGES | judged_working.JUDGES | judged_formal.JUDGES | judged_issue.JUDGES
+          | judged_review.JUDGES)
 """What decides each point that a program can decide."""
 
 

@@ -3,10 +3,11 @@ from __future__ import annotations
 
 import re
 from collections.abc import Mapping
-from itertools import pairwise
 
+from calcpack.points.judged_issue import field
 from calcpack.points.point import IDLE, MET, Data, Judge, Verdict, View, all_of, decided
 from calcpack.record import Record
+from calcpack.render.outcome import status_words
 from calcpack.reread.page_reader import table_of
 from calcpack.reread.reckoning import si_value
 
@@ -28,23 +29,14 @@ def _header(words: str, box: str) -> Judge:
     def judge(view: View) -> Verdict:
         rule = re.search(rf"@{box} \{{ content: (.*?); \}}", view.html)
         text = re.sub(r"\\([0-9a-f]+) ", lambda code: chr(int(code[1], 16)), rule[1]) if rule else ""
-        wanted = words.format(**view.sheet, status_words=view.sheet["status"].replace("-", " ").upper())
+        wanted = words.format(**view.sheet, status_words=status_words(view.record).upper())
         return decided(wanted in text, "margin of every printed page", f"no page margin says {wanted}")
     return judge
 
 
 def _date(view: View) -> Verdict:
-    return decided(bool(ISO_DATE.search(_field(view, "Date"))), "title block", "the sheet has no date")
-
-
-def _field(view: View, name: str) -> str:
-    """A field of the title block, by its heading."""
-    for block in view.page.all(".block"):
-        cells = [one for one in block.walk() if one.tag in ("th", "td")]
-        for head, cell in pairwise(cells):
-            if head.text == name:
-                return cell.text
-    return ""
+    name = "Issued" if view.record.get("issue") else "Date"
+    return decided(bool(ISO_DATE.search(field(view, name))), "title block", "the sheet has no date")
 
 
 def _hashes(view: View) -> Verdict:

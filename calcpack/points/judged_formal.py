@@ -12,16 +12,6 @@ PLACE = re.compile(r"\b(pp?\.|pages?|clause|section|sect\.|§|annex|art\.|articl
                    r"example|chapter|ch\.|row|rows|line|lines|sheets?|item|result)\s*[\w(]", re.IGNORECASE)
 
 
-def _signed(view: View) -> Verdict:
-    signoff = view.record.get("signoff") or {}
-    missing = [role for role in ("prepared", "checked", "approved")
-               if not (signoff.get(role) or {}).get("name") or not (signoff.get(role) or {}).get("date")]
-    if missing:
-        return UNMET, f"not yet signed: {', '.join(missing)}"
-    apart = signoff["prepared"]["name"] != signoff["checked"]["name"]
-    return decided(apart, "title block", "the author is the checker")
-
-
 def _method(view: View) -> Verdict:
     groups = list(dict.fromkeys(one["group"] for one in view.items("checks")))
     return decided(bool(groups), f"Verification: {', '.join(group.lower() for group in groups[:3])} and others"
@@ -38,24 +28,6 @@ def _alternate(view: View) -> Verdict:
     bad = sorted(name for name in wanted if name in anew and not anew[name].agrees)
     return decided(not lacking and not bad, "Checklist: results reckoned anew",
                    f"not reckoned anew: {shortened([*lacking, *bad])}")
-
-
-def _void(view: View) -> Verdict:
-    signoff = view.record.get("signoff") or {}
-    if not signoff.get("checked"):
-        return IDLE, "the sheet has not been checked"
-    return UNMET, "a signature does not carry the hash of what was signed"
-
-
-def _history(view: View) -> Verdict:
-    entries = view.items("revisions")
-    if not entries:
-        return UNMET, "no history is stated"
-    current = [one for one in entries if one["revision"] == view.sheet["revision"]]
-    bare = [one["revision"] for one in entries if not all(one.get(key) for key in ("date", "note", "by"))]
-    if not current or bare:
-        return UNMET, f"not complete: {', '.join(bare) or view.sheet['revision']}"
-    return UNMET, "who checked and approved stands in the title block for this revision alone"
 
 
 def _marks(view: View) -> Verdict:
@@ -94,34 +66,40 @@ def _old_and_new(view: View) -> Verdict:
                    "no table of changes stands on the sheet")
 
 
-def _supersedes(view: View) -> Verdict:
-    if len(view.items("revisions")) <= 1 and view.comparison is None and view.sheet["status"] != "superseded":
-        return IDLE, "first revision; it supersedes nothing"
-    return UNMET, "the sheet does not say what it supersedes, nor what supersedes it"
-
-
-def _old_stamp(view: View) -> Verdict:
-    if view.sheet["status"] not in ("superseded", "void"):
-        return IDLE, f"the status is {view.sheet['status']}"
-    stamps = " ".join(one.text for one in view.page.all(".stamp"))
-    return decided(view.sheet["status"].upper() in stamps, "stamp on every page", "no stamp")
-
-
 def _register(view: View) -> Verdict:
-    """The register's row of this sheet, made as the register makes it, beside the sheet."""
+    """The register's row of this sheet, made as the register makes it, beside what the page prints."""
+    from calcpack.render.outcome import status_words
     from calcpack.render.register import register_html
     from calcpack.render.sheet import file_stem
     from calcpack.reread.elements import elements_of
-    sheet = view.sheet
-    text = elements_of(register_html([Record(view.record)], [file_stem(sheet["number"])], pdf=False)).text
-    wanted = [sheet["number"], " ".join(sheet["title"].split()), sheet["revision"], sheet["status"].replace("-", " "),
-              view.record["spec_sha256"][:12], *([sheet["date"]] if sheet.get("date") else [])]
-    lacking = [word for word in wanted if word not in text]
-    return decided(not lacking, "register of sheets", f"the register does not say {', '.join(lacking)}")
+    sheet, around = view.sheet, view.extras.family or {}
+    register = elements_of(register_html([Record(view.record)], [file_stem(sheet["number"])], pdf=False,
+                                         extras={sheet["number"]: view.extras})).text
+    title = [sheet["number"], " ".join(sheet["title"].split()), sheet["revision"], status_words(view.record),
+             *([sheet["date"]] if sheet.get("date") else [])]
+    wanted = {word: view.title for word in title} | {view.record["spec_sha256"][:12]: view.text("machine")}
+    wanted |= {one["number"]: view.text("family") for one in around.get("upstream") or ()}
+    lacking = [f"the register does not say {word}" for word in wanted if word not in register]
+    lacking += [f"the sheet does not say {word}" for word, text in wanted.items() if word not in text]
+    return decided(not lacking, "register of sheets", shortened(lacking, 2))
 
 
 def _linked(view: View) -> Verdict:
-    return UNMET, "a sheet cannot name the sheets before and after it yet"
+    """The sheets before and after, each with its revision, as the page lists them."""
+    around = view.extras.family
+    if around is None or "family" not in view.parts:
+        return UNMET, "the sheet does not say which sheets stand before and after it"
+    known = {"upstream": {one["from"]["number"] for one in view.items("inputs") if one.get("from")},
+             "downstream": {one["number"] for one in around["downstream"]}}
+    lacking = []
+    for side, numbers in known.items():
+        printed = {cells[0].text: cells[1].text for cells in rows(table_of(view.parts["family"], side))}
+        lacking += [number for number in sorted(numbers) if not printed.get(number, "").replace("not stated", "")]
+    if not known["upstream"] and not view.prints("family", "takes nothing from other sheets"):
+        return UNMET, "the sheet does not say that it takes nothing from others"
+    count = len(known["upstream"]), len(known["downstream"])
+    return decided(not lacking, "Sheets before and after: {} before, {} after".format(*count),
+                   f"without a revision: {shortened(lacking)}")
 
 
 def _placed(view: View) -> Verdict:
@@ -186,9 +164,8 @@ def _named(view: View) -> Verdict:
 
 
 JUDGES: dict[int, Judge] = {
-    45: _signed, 46: _method, 47: _alternate, 48: _alternate, 50: _void, 52: _history, 53: _marks, 54: _current,
-    55: _letters, 56: _old_and_new, 57: _supersedes, 58: _old_stamp, 59: _register, 60: _linked, 61: _placed,
-    62: lambda view: (IDLE, "no pages are attached; the record goes beside the sheet, with its hash"),
+    46: _method, 47: _alternate, 48: _alternate, 53: _marks, 54: _current,
+    55: _letters, 56: _old_and_new, 59: _register, 60: _linked, 61: _placed,
     63: lambda view: (PERSON, f"run: calcpack build {view.record['spec_file']}, and compare the hash of the record"),
     64: _versions, 65: _verified, 66: _covered, 67: _known_errors, 68: _by_hand, 69: _in_words, 70: _headed,
     71: _named}

@@ -3,7 +3,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from calcpack.points.point import IDLE, MET, Data, Judge, Verdict, View, all_of, decided, shortened
+from calcpack.points.point import IDLE, MET, UNMET, Data, Judge, Verdict, View, all_of, decided, shortened
 
 
 def _shown(view: View) -> Verdict:
@@ -15,11 +15,17 @@ def _shown(view: View) -> Verdict:
 
 def _referenced(view: View) -> Verdict:
     steps = view.items("steps")
-    bare = [one["id"] for one in steps if not one.get("reference") and not one.get("note") and one["kind"] != "property"
-            and one["kind"] not in ("series", "total")]
+    bare = [one["id"] for one in steps if not _grounded(one)]
     if not steps:
         return IDLE, "the sheet has no steps"
     return decided(not bare, "Calculation", f"{len(bare)} of {len(steps)} steps name no reference: {shortened(bare)}")
+
+
+def _grounded(step: Data) -> bool:
+    """Whether a step says what it stands on; a property stands on its fluid's equation of state, named there."""
+    if step["kind"] == "property" or step.get("reference"):
+        return True
+    return bool((step.get("lookup") or {}).get("source") or (step.get("own") and step.get("note")))
 
 
 def _redone(view: View) -> Verdict:
@@ -94,9 +100,17 @@ def _validity(view: View) -> Verdict:
     said = (*(case.get("assumes") or ()), *(case.get("leaves_out") or ()))
     ranges = [one["range"] for one in (case.get("fluids") or {}).values() if one.get("range")]
     if not said and not ranges:
-        return decided(False, "", "neither the method nor a fluid states limits")
+        return _assumed(view) if case["method"] == "none" else (UNMET, "neither the method nor a fluid states limits")
     printed = view.prints("method", *said) and view.prints("fluids", *ranges)
     return decided(printed, "Method and arrangement, Fluids", "limits of validity are not printed")
+
+
+def _assumed(view: View) -> Verdict:
+    """A sheet of the engineer's own steps holds as far as its assumptions do."""
+    if not view.items("assumptions"):
+        return UNMET, "neither a fluid nor an assumption states limits"
+    return all_of(view.items("assumptions"), lambda one: bool(one.get("effect")), lambda one: one["id"],
+                  "Assumptions: what changes where one does not hold", "without an effect", "")
 
 
 def _bounded(view: View) -> Verdict:

@@ -14,6 +14,7 @@ from typing import Any
 from calcpack.errors import CommandError, Fault
 
 FORMAT = 1
+_NAMED = (("inputs", "symbol"), ("steps", "symbol"), ("limits", "id"))
 
 
 @dataclass(frozen=True, slots=True)
@@ -86,4 +87,18 @@ def read_record(path: Path, text: str | None = None) -> Record:
     if missing or data.get("calcpack") != FORMAT:
         raise CommandError(Fault(f"{path} is not a record of format {FORMAT}",
                                  found="no " + ", ".join(missing) if missing else f"format {data.get('calcpack')!r}"))
+    if wrong := _misshapen(data):
+        raise CommandError(Fault(f"{path} is a damaged record", found=", ".join(wrong),
+                                 expected="the file as 'calcpack solve --json' wrote it"))
     return Record(data)
+
+
+def _misshapen(data: Mapping[str, Any]) -> list[str]:
+    """The parts of a record that are not of the shape that all readers count on."""
+    wrong = [f"{key} is not a mapping" for key in ("sheet", "case", "results") if not isinstance(data[key], Mapping)]
+    if isinstance(data["sheet"], Mapping):
+        wrong += [f"sheet.{key} is not a text" for key in ("number", "revision", "title", "status")
+                  if not isinstance(data["sheet"].get(key), str)]
+    return wrong + [f"{key} is not a list of mappings with a text {name}" for key, name in _NAMED
+                    if not isinstance(data[key], list) or
+                    not all(isinstance(one, Mapping) and isinstance(one.get(name), str) for one in data[key])]

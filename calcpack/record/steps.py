@@ -11,8 +11,8 @@ from calcpack.plan.laid import LaidStep
 from calcpack.plan.steps import CasesStep, LookupStep, OptimumStep, RootStep, SeriesStep, TotalStep
 from calcpack.record.cases import case_table
 from calcpack.record.identity import step_identity
-from calcpack.solving.program import neighbours
 from calcpack.solving.solution import Solution, printed_freely
+from calcpack.solving.tables import neighbours
 from calcpack.units import Unit, print_unit, read_quantity, shown_with_unit
 from calcpack.units.digits import decimals_for, number_text
 

@@ -5,8 +5,9 @@ import shutil
 from pathlib import Path
 
 from calcpack.errors import Fault, MissingPartError
+from calcpack.render.marking import SCRIPTS
 
-STYLES = ("fonts.css", "equation.css", "sheet.css", "screen.css", "register.css")
+STYLES = ("fonts.css", "equation.css", "sheet.css", "screen.css", "review.css", "register.css")
 PICTURES = ("delta.svg",)
 
 
@@ -27,9 +28,10 @@ def templates_folder() -> Path:
 
 
 def copy_assets(target: Path) -> list[Path]:
-    """Copies style sheets, pictures and fonts below ``target``; their paths, relative to it."""
+    """Copies style sheets, pictures, scripts and fonts below ``target``; their paths, relative to it."""
     source = templates_folder()
     names = [Path("styles") / name for name in (*STYLES, *PICTURES)]
+    names += [Path("scripts") / name for name in SCRIPTS]
     names += sorted(path.relative_to(source) for path in (source / "fonts").iterdir() if path.is_file())
     for name in names:
         (target / name).parent.mkdir(parents=True, exist_ok=True)

@@ -8,6 +8,7 @@ from markupsafe import Markup
 
 from calcpack.render import quantities
 from calcpack.render.fluid_names import fluid_page_name
+from calcpack.render.linked import source_cell
 from calcpack.render.pages import Ground, anchor, link
 
 Data = Mapping[str, Any]
@@ -40,18 +41,20 @@ def inputs(ground: Ground) -> dict[str, Any] | None:
     rows = [_input(ground, one) for one in ground.items("inputs")]
     return {"rows": rows, "defaults": any(row["default"] for row in rows),
             "tolerances": any(row["tolerance"] for row in rows),
+            "linked": any(one.get("from") for one in ground.items("inputs")),
             "unsourced": sum(not row["source"] for row in rows)} if rows else None
 
 
 def _input(ground: Ground, one: Data) -> dict[str, Any]:
     tolerance = one.get("tol")
-    return {"anchor": anchor("input", one["symbol"]), "mark": ground.marks.symbol(one["symbol"]),
+    return {"anchor": anchor("input", one["symbol"]), "name": one["symbol"], "mark": ground.marks.symbol(one["symbol"]),
             "symbol": quantities.symbol(one["symbol"]), "title": quantities.titled(one["symbol"], one["title"]),
             "value": quantities.shown(one),
             "written": one.get("written") or "", "note": one.get("note") or "",
             "tolerance": Markup("±&nbsp;{}").format(quantities.quantity(tolerance["shown"], tolerance["unit"]))
             if tolerance else "",
-            "source": ground.sourced(one.get("source")), "default": one.get("default", False),
+            "source": source_cell(ground, one["from"]) if one.get("from") else ground.sourced(one.get("source")),
+            "default": one.get("default", False),
             "used": Markup(", ").join(link(anchor("step", name), name) for name in one.get("used_by") or ())}
 
 

@@ -37,7 +37,13 @@ def changes(ground: Ground) -> dict[str, Any] | None:
     return {"against": comparison["against"], "letter": comparison["letter"], "marks": ground.marks.count,
             "numbers": _tables(ground, NUMBERS), "shares": _shares(ground), "texts": _tables(ground, TEXTS),
             "moved": Markup(", ").join(link(anchor("step", one["step"]), one["step"]) for one in moved),
-            "moved_count": len(moved), "notes": comparison.get("notes") or ()}
+            "moved_count": len(moved), "notes": comparison.get("notes") or (),
+            "figures": [one for one in ground.figures if is_waterfall(one)]}
+
+
+def is_waterfall(figure: Any) -> bool:
+    """Whether a figure is the one of what moved the results."""
+    return figure.id == "waterfall"
 
 
 def _shares(ground: Ground) -> dict[str, Any] | None:

@@ -10,6 +10,7 @@ from markupsafe import Markup
 from calcpack.formula.tree import Quantity, walk
 from calcpack.render import quantities
 from calcpack.render.basis import is_sketch
+from calcpack.render.changes import is_waterfall
 from calcpack.render.losses import is_ladder
 from calcpack.render.pages import Ground, anchor, link
 from calcpack.render.working import formulas_of
@@ -57,8 +58,8 @@ def _cell(one: Data | None, column_unit: str) -> quantities.Shown | None:
 
 
 def diagrams(ground: Ground) -> dict[str, Any] | None:
-    """The figures but for the arrangement sketch and the ladder, which stand in parts of their own."""
-    shown = [figure for figure in ground.figures if not (is_sketch(figure) or is_ladder(figure))]
+    """The figures but for the arrangement sketch, the ladder and what moved the results, which have other parts."""
+    shown = [one for one in ground.figures if not (is_sketch(one) or is_ladder(one) or is_waterfall(one))]
     return {"figures": shown} if shown else None
 
 
@@ -114,10 +115,3 @@ def _constants(ground: Ground) -> list[dict[str, Any]]:
 def _order(name: str) -> tuple[str, str]:
     base = name.split("_")[0]
     return base.casefold(), name
-
-
-def history(ground: Ground) -> dict[str, Any] | None:
-    """The revision history."""
-    sheet = ground.record["sheet"]
-    return {"rows": [{**one, "by": one.get("by") or "", "current": one["revision"] == sheet["revision"]}
-                     for one in ground.items("revisions")]}

@@ -45,6 +45,7 @@ def machine(ground: Ground) -> dict[str, Any] | None:
     engine = ground.record["engine"]
     libraries = [f"{name} {version}" for name, version in sorted(engine["libraries"].items())]
     return {"engine": engine, "libraries": libraries, "spec_file": ground.record["spec_file"],
+            "record_file": (ground.record.get("issue") or {}).get("record"),
             "spec_sha256": ground.record["spec_sha256"], "record_sha256": record_hash(ground.record),
             "tolerance": quantities.prose(engine.get("root_tolerance")),
             "iterated": any(one["kind"] in ("root", "optimum") for one in ground.items("steps")),

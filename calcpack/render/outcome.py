@@ -9,11 +9,12 @@ from markupsafe import Markup
 
 from calcpack.render import quantities
 from calcpack.render.cautions import usual_limits
+from calcpack.render.issues import for_information, issue_lines
 from calcpack.render.pages import Ground, anchor, link
+from calcpack.render.review_part import check_words, signature_rows
 
 Data = Mapping[str, Any]
 
-SIGNATURES = (("prepared", "Prepared"), ("checked", "Checked"), ("approved", "Approved"))
 STAMPS = {"superseded": "SUPERSEDED", "void": "VOID"}
 
 
@@ -38,6 +39,8 @@ def standing(record: Data) -> Standing:
     holds = tuple(one["id"] for one in record.get("holds") or ())
     status = record["sheet"]["status"]
     stamp = [STAMPS[status]] if status in STAMPS else (["DRAFT"] if status == "draft" else [])
+    if for_information(record):
+        stamp = ["FOR INFORMATION"]
     if holds and status not in STAMPS:
         stamp.append("HOLD OPEN")
     limits = record.get("limits") or ()
@@ -59,19 +62,21 @@ def counted(count: int, one: str, several: str) -> str:
 def title_block(ground: Ground) -> dict[str, Any]:
     """The fields of the title block."""
     sheet = ground.record["sheet"]
-    signoff = ground.record.get("signoff") or {}
     return {"sheet": sheet, "status": status_words(ground.record), "date": sheet_date(ground.record),
+            "made": (ground.record.get("issue") or {}).get("date") or sheet_date(ground.record),
             "standing": standing(ground.record),
-            "signatures": [{"title": title, "signature": signoff.get(role)} for role, title in SIGNATURES],
+            "signatures": signature_rows(ground), "check": check_words(ground.extras.review),
             "limits": len(ground.items("limits")),
             "cautions": sum(one["status"] == "triggered" for one in ground.items("cautions")),
             "unproved": [row["id"] for row in (ground.record.get("uncertainty") or {}).get("limits", ())
                          if row["verdict"].startswith("margin smaller")],
-            "marks": ground.marks, "hash": ground.record["spec_sha256"][:12]}
+            "issue": issue_lines(ground), "marks": ground.marks, "hash": ground.record["spec_sha256"][:12]}
 
 
 def status_words(record: Data) -> str:
-    """The status as words: 'for review' rather than 'for-review'."""
+    """The status as words: 'for review' rather than 'for-review', and for what a sheet is issued."""
+    if for_information(record):
+        return "issued for information"
     return record["sheet"]["status"].replace("-", " ")
 
 

@@ -9,7 +9,8 @@ from __future__ import annotations
 import gc
 import logging
 import os
-from collections.abc import Iterator
+import warnings
+from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from io import BytesIO
 from pathlib import Path
@@ -20,6 +21,8 @@ from calcpack.render.assets import templates_folder
 from calcpack.writing import write_whole
 
 if TYPE_CHECKING:
+    import pikepdf
+
     from calcpack.record import Record
 
 INSTALL = ("WeasyPrint needs Pango and HarfBuzz: on Debian and Ubuntu 'apt install libpango-1.0-0 "
@@ -48,16 +51,25 @@ def write_pdf(html: str, path: Path, record: Record) -> int:
     return pages
 
 
-def pdf_bytes(html: str, number: str) -> tuple[bytes, int]:
-    """The PDF and its number of pages; ``number`` is for the messages."""
+def pdf_bytes(html: str, number: str, *, variant: str | None = None, tags: bool = True,
+              finish: Callable[[pikepdf.Pdf], None] | None = None) -> tuple[bytes, int]:
+    """The PDF and its number of pages; ``number`` is for the messages.
+
+    ``variant`` is a kind of PDF that the engine knows, such as ``pdf/a-3u``;
+    ``tags`` says whether the structure goes with the page;
+    ``finish`` is called with the object tree before it gets its identifier.
+    """
     engine = _engine()
     with _clock(), _uncollected(), _warnings() as heard:
         document = engine.HTML(string=html, base_url=_base(), url_fetcher=_fetcher()).render()
-        raw = document.write_pdf(pdf_tags=True)
+        with warnings.catch_warnings():
+            # The engine leaves the file of its colour profile for Python to close, which it does at once.
+            warnings.simplefilter("ignore", ResourceWarning)
+            raw = document.write_pdf(pdf_tags=tags, pdf_variant=variant)
     if heard:
         raise MissingPartError(Fault(f"the PDF of sheet {number} would not be complete", detail="; ".join(heard),
                                      hint="install calcpack again; if that does not help, report the detail"))
-    return _settled(raw), len(document.pages)
+    return _settled(raw, finish), len(document.pages)
 
 
 def _engine() -> Any:
@@ -145,10 +157,12 @@ def _uncollected() -> Iterator[None]:
         gc.enable()
 
 
-def _settled(raw: bytes) -> bytes:
-    """The same PDF with an identifier that hangs on its content alone."""
+def _settled(raw: bytes, finish: Callable[[pikepdf.Pdf], None] | None) -> bytes:
+    """The same PDF, finished, with an identifier that hangs on its content alone."""
     import pikepdf
     settled = BytesIO()
     with pikepdf.open(BytesIO(raw)) as pdf:
+        if finish is not None:
+            finish(pdf)
         pdf.save(settled, deterministic_id=True, object_stream_mode=pikepdf.ObjectStreamMode.generate)
     return settled.getvalue()

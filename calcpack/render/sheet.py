@@ -9,8 +9,22 @@ from typing import TYPE_CHECKING, Any
 
 from markupsafe import Markup
 
-from calcpack.render import basis, cautions, changes, evidence, formal, losses, outcome, tolerances, working
+from calcpack.render import (
+    basis,
+    cautions,
+    changes,
+    evidence,
+    formal,
+    issues,
+    linked,
+    losses,
+    outcome,
+    review_part,
+    tolerances,
+    working,
+)
 from calcpack.render.assets import templates_folder
+from calcpack.render.marking import SCRIPTS, boxes_of, no_boxes, review_data
 from calcpack.render.pages import NO_EXTRAS, Extras, Ground, anchor, ground_of
 
 if TYPE_CHECKING:
@@ -38,6 +52,7 @@ PARTS = (
     Part("inputs", "Design inputs", basis.inputs),
     Part("assumptions", "Assumptions", basis.assumptions),
     Part("references", "References", basis.references),
+    Part("family", "Sheets before and after this one", linked.family),
     Part("method", "Method and arrangement", basis.method),
     Part("calculation", "Calculation", working.calculation),
     Part("fluids", "Fluids", basis.fluids),
@@ -45,10 +60,11 @@ PARTS = (
     Part("diagrams", "Diagrams", evidence.diagrams),
     Part("bound", "From the reversible bound to the net figure", losses.bound),
     Part("verification", "Verification", evidence.verification),
+    Part("review", "Check by another person", review_part.check),
     Part("uncertainty", "Uncertainty and sensitivity", tolerances.uncertainty),
     Part("cautions", "Cautions", cautions.cautions),
     Part("nomenclature", "Nomenclature", evidence.nomenclature),
-    Part("history", "Revision history", evidence.history),
+    Part("history", "Revision history", issues.history),
     Part("checklist", "Checklist", formal.checklist),
     Part("machine", "How it was computed", formal.machine),
 )
@@ -72,12 +88,20 @@ def sheet_html(record: Record, *, comparison: Data | None = None, figures: Seque
     pictures = {figure.id: picture_address(figure, stem, for_print) for figure in ground.figures}
     return environment().get_template("sheet.html").render(
         block=outcome.title_block(ground), parts=parts, page=page_rules(record.data), pictures=pictures, stem=stem,
-        for_print=for_print, pdf=pdf, styles=style_addresses(for_print))
+        for_print=for_print, pdf=pdf, styles=style_addresses(for_print), **_desk(record, for_print, extras))
+
+
+def _desk(record: Record, for_print: bool, extras: Extras) -> dict[str, Any]:
+    """What the page needs so that a checker can mark it; paper is marked by hand."""
+    if for_print:
+        return {"box": no_boxes, "scripts": (), "review_data": ""}
+    return {"box": boxes_of(record.data), "scripts": [f"assets/scripts/{name}" for name in SCRIPTS],
+            "review_data": review_data(record.data, extras.review.review if extras.review else None)}
 
 
 def style_addresses(for_print: bool) -> list[str]:
     """The addresses of the style sheets, in the order in which they overrule each other."""
-    names = ["fonts", "equation", "sheet", *([] if for_print else ["screen"])]
+    names = ["fonts", "equation", "sheet", *([] if for_print else ["screen", "review"])]
     return [f"{'' if for_print else 'assets/'}styles/{name}.css" for name in names]
 
 

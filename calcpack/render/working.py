@@ -28,6 +28,7 @@ class StepView:
     """A step ready for print; ``parts`` names the details that its kind adds."""
 
     id: str
+    symbol: str
     anchor: str
     title: str
     kind: str
@@ -56,8 +57,9 @@ def _step(ground: Ground, step: Data) -> StepView:
     equation, details = _KINDS.get(kind, _plain)(ground, step)
     rows = details.get("rows") or ()
     return StepView(
-        step["id"], anchor("step", step["id"]), step["title"], kind, ground.marks.symbol(step["symbol"]),
-        equation, ground.sourced(step.get("reference")), _opened(step.get("note") or ""), _uses(ground, step),
+        step["id"], step["symbol"], anchor("step", step["id"]), step["title"], kind,
+        ground.marks.symbol(step["symbol"]), equation, ground.sourced(step.get("reference")),
+        _opened(step.get("note") or ""), _uses(ground, step),
         _step_links(ground.used_by.get(step["symbol"], ())), _fluids(ground, step), details,
         len(rows) > SHORT_TABLE)
 

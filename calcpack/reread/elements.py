@@ -5,8 +5,8 @@ from collections.abc import Iterator
 from dataclasses import dataclass, field
 from html.parser import HTMLParser
 
-VOID = frozenset({"meta", "link", "col", "br", "img", "hr"})
-UNSEEN = frozenset({"math", "style", "script", "head"})
+VOID = frozenset({"meta", "link", "col", "br", "img", "hr", "input"})
+UNSEEN = frozenset({"math", "style", "script", "head", "template"})
 """Elements whose text is no part of the visible page; the MathML twin is for screen readers alone."""
 
 

@@ -72,7 +72,8 @@ def attribution(before: Data, after: Data, comparison: Data, folder: Path) -> tu
         By symbol: ``parts`` (each ``cause``, ``text``, ``part_value`` [SI],
         ``number`` and ``shown`` in the ``unit`` of print), ``program`` (the
         part that is the program's, of the same shape), ``sum`` [SI] of them
-        all, ``sum_number``, ``method``, ``solves``.
+        all, ``sum_number``, ``method``, ``solves``; ``ends``, the result before and
+        after (``value`` [SI], ``number`` in the ``ends_unit``, of a level its twin's).
     str
         Empty, or why nothing is attributed.
     """
@@ -128,7 +129,7 @@ def _bound(record: Data, folder: Path, which: str) -> Bound:
         spec = read_spec(path, text=text, name=str(path))
         # A value may have been set on the command line: the record has it as written.
         written = {one["symbol"]: one["written"] for one in record["inputs"] if one.get("written")}
-        inputs = {symbol: replace(spec.case.inputs.get(symbol) or Input(symbol, value), value=value)
+        inputs = {symbol: replace(spec.case.inputs.get(symbol) or Input(symbol, value), value=value, link=None)
                   for symbol, value in written.items()}
         return bind(replace(spec, case=replace(spec.case, inputs={**spec.case.inputs, **inputs})))
     except CalcpackError as error:
@@ -158,7 +159,20 @@ def _shared(ground: _Ground, symbol: str) -> dict[str, Any]:
         program += rest
     whole = fsum([*(part["part_value"] for part in parts), program])
     return {"parts": parts, "program": printing.part("program", ground.program, program), "sum": whole,
-            "sum_number": printing.number(whole), "unit": new["unit"], "method": method}
+            "sum_number": printing.number(whole), "unit": new["unit"], "method": method, **_ends(old, new)}
+
+
+def _ends(old: Data, new: Data) -> dict[str, Any]:
+    """A result before and after, both in the unit that the newer sheet prints; of a level the twin, °C or °F."""
+    in_print = unit(new["unit"])
+    if old["unit"] == new["unit"] and old.get("also_shown") and new.get("also_shown"):
+        numbers, name = [one["also_shown"].partition(" ")[0] for one in (old, new)], new["also_shown"].partition(" ")[2]
+    else:
+        decimals = max(0, -int(Decimal(new["shown"]).as_tuple().exponent))
+        was = old["shown"] if old["unit"] == new["unit"] else number_text(in_print.from_si(old["value"]), decimals)
+        numbers, name = [was, new["shown"]], in_print.symbol
+    return {"ends_unit": name, "ends": [{"value": one["value"], "number": number}
+                                        for one, number in zip((old, new), numbers, strict=True)]}
 
 
 def _parts(ground: _Ground, value: Any) -> tuple[list[tuple[tuple[int, ...], float]], str]:

@@ -108,4 +108,5 @@ def causes(symbol: str, old: Upstream, new: Upstream, comparison: Data) -> list[
 def _cause(kind: str, name: str, entry: Entry) -> dict[str, Any]:
     what = f" ({entry['what']})" if kind == "formula" and entry["what"] not in ("formula", "step") else ""
     old, new = (entry[key] if entry[key] is not None else "none" for key in ("old", "new"))
-    return {"kind": kind, "name": name, "text": f"{name}{what}: {old} → {new}"}
+    taken = f", taken from {entry['taken_from']}" if entry.get("taken_from") else ""
+    return {"kind": kind, "name": name, "text": f"{name}{what}: {old} → {new}{taken}"}

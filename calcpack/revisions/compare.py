@@ -29,7 +29,7 @@ def compare(old: Record, new: Record, *, source: str | None = None, folder: Path
     old, new : Record
         Two revisions of a sheet; of two different sheets, ``sheet`` says so.
     source : str, optional
-        Where the old record comes from, for the reader; else its spec's name.
+        Where the old record comes from, for the reader; else its PDF, if it was issued, or its spec.
     folder : Path, optional
         The folder of the specs, for files of rows that they name; else the current one.
 
@@ -53,11 +53,17 @@ def compare(old: Record, new: Record, *, source: str | None = None, folder: Path
     found["engine"] = entries.program(before, after)
     _add_causes(before, after, found)
     parts, note = attribution(before, after, found, folder if folder is not None else Path())
+    _drop_still_causes(found, parts)
     edited = _edited(after, found)
-    return {"against": {**_named(before), "source": source or before.get("spec_file")}, "of": _named(after),
+    return {"against": {**_named(before), "source": source or _named_by(before)}, "of": _named(after),
             "letter": after["sheet"]["revision"], **found, "notes": _notes(before, after),
             "edited": edited, "moved_only": [one["symbol"] for one in found["steps"] if one["kind"] == "moved"],
             "attribution": parts, "attribution_note": note, **_marks(after, found)}
+
+
+def _named_by(record: Mapping[str, Any]) -> str | None:
+    """The file that a reader can ask for: of an issue its PDF, since its spec's name is that of the newer one too."""
+    return (record.get("issue") or {}).get("file") or record.get("spec_file")
 
 
 def differs(comparison: Mapping[str, Any]) -> bool:
@@ -82,6 +88,17 @@ def _add_causes(before: Mapping[str, Any], after: Mapping[str, Any], found: dict
     old, new = Upstream(before, after), Upstream(after, before)
     for one in (*found["results"], *found["limits"]):
         one["causes"] = causes(one["symbol"], old, new, found)
+
+
+def _drop_still_causes(found: Mapping[str, Any], parts: Mapping[str, Any]) -> None:
+    """Take from each result's causes, and its limits', those whose part in its move is nothing."""
+    for one in (*found["results"], *found["limits"]):
+        if one["symbol"] in parts:
+            told = parts[one["symbol"]]
+            still = {name for part in told["parts"] if part["number"] == "0" for name in part["cause"].split(", ")}
+            kept = [cause for cause in one["causes"] if cause["name"] not in still
+                    and not (cause["kind"] == "program" and told["program"]["number"] == "0")]
+            one["causes"] = kept or one["causes"]
 
 
 def _named(record: Mapping[str, Any]) -> dict[str, Any]:

@@ -39,7 +39,7 @@ class Repository:
         commit = self.commit(revision)
         for candidate in self._candidates(path):
             for name in (candidate, self.earlier_name(commit, candidate)):
-                content = name and self._blob(commit, name)
+                content = name and self.blob(commit, name)
                 if content is not None and name:
                     return content
         raise self._no_such_path(revision, commit, path)
@@ -66,10 +66,33 @@ class Repository:
             name = old if new == name else name
         if name == path:
             # Renamed in the index only, or on a branch that does not come from the commit.
-            diff = _run(self.top, "diff", "-M", "--no-ext-diff", "--no-textconv", "--diff-filter=R", "--name-status",
-                        "-z", commit)
-            name = next((old for old, new in _renames(diff.stdout) if new == path), name)
+            name = next((old for old, new in self.renamed_since(commit) if new == path), name)
         return name if name != path else None
+
+    def files(self, commit: str, folder: str) -> list[str]:
+        """The files in and below a folder at a commit, named from the top, as ``folder`` is."""
+        listed = _run(self.top, "ls-tree", "-r", "-z", "--name-only", "--full-tree", commit,
+                      *([] if folder == "." else ["--", f"{folder}/"]))
+        return [name for name in listed.stdout.decode("utf-8", "surrogateescape").split("\0") if name]
+
+    def beside(self, revision: str, path: str) -> dict[str, bytes]:
+        """The YAML files of the folder of ``path`` as they stood at a revision, by their names."""
+        commit = self.commit(revision)
+        for candidate in self._candidates(path):
+            folder = PurePosixPath(candidate).parent
+            names = [name for name in self.files(commit, str(folder)) if PurePosixPath(name).parent == folder
+                     and name.endswith((".yaml", ".yml"))]
+            found = {PurePosixPath(name).name: content for name in names
+                     if (content := self.blob(commit, name)) is not None}
+            if found:
+                return found
+        return {}
+
+    def renamed_since(self, commit: str) -> list[tuple[str, str]]:
+        """``(old, new)`` names of what git takes for renamed between a commit and the work tree."""
+        diff = _run(self.top, "diff", "-M", "--no-ext-diff", "--no-textconv", "--diff-filter=R", "--name-status", "-z",
+                    commit)
+        return list(_renames(diff.stdout))
 
     def _candidates(self, path: str) -> list[str]:
         """The path from the folder and from the top, as git names files: relative to the top, with '/'."""
@@ -78,8 +101,9 @@ class Repository:
         names = (os.path.relpath(os.path.normpath(one), self.top) for one in tried)
         return [name for one in dict.fromkeys(names) if not (name := Path(one).as_posix()).startswith("../")]
 
-    def _blob(self, commit: str, name: str) -> bytes | None:
-        """The file's bytes as git keeps them: no filter or text conversion of the machine's takes part."""
+    def blob(self, commit: str, name: str) -> bytes | None:
+        """A file's bytes as git keeps them, without any filter of the machine's; None where no such file stood there.
+        """
         found = _run(self.top, "cat-file", "blob", f"{commit}:{name}")
         return found.stdout if found.returncode == 0 else None
 
@@ -115,7 +139,7 @@ def repository(folder: Path) -> Repository:
         raise CommandError(Fault(f"git does not trust {folder.resolve()}: it belongs to another user",
                                  hint="if you trust it, name it in git's setting safe.directory", detail=detail))
     raise CommandError(Fault(f"{folder.resolve()} is not in a work tree of git",
-                             hint="REV:path needs one; without git, name the record or the PDF that was kept",
+                             hint="a revision is read from one; without git, name the record or the PDF that was kept",
                              detail=detail))
 
 
@@ -128,7 +152,7 @@ def _run(folder: Path, *arguments: str) -> subprocess.CompletedProcess[bytes]:
         return subprocess.run(command, capture_output=True, check=False, timeout=SECONDS, env=environment,
                               stdin=subprocess.DEVNULL)
     except FileNotFoundError as error:
-        raise MissingPartError(Fault("git is not installed, and REV:path is read through it",
+        raise MissingPartError(Fault("git is not installed, and a revision is read through it",
                                      hint="install git, or name a spec, a record or an issued PDF",
                                      detail=str(error))) from None
     except subprocess.TimeoutExpired as error:

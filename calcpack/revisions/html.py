@@ -2,6 +2,7 @@
 from __future__ import annotations
 
 import re
+from collections.abc import Sequence
 from html import escape
 
 from calcpack.revisions.outline import Outline, Part, Row
@@ -15,7 +16,7 @@ STYLE = """
 :root { color-scheme: light; }
 body { font: 16px/1.45 "STIX Two Text", Georgia, serif; color: #1a1a1a; background: #fff;
        max-width: 62rem; margin: 2rem auto; padding: 0 1rem; }
-h1 { font-size: 1.5rem; margin: 0 0 .25rem; } h2 { font-size: 1.1rem; margin: 1.75rem 0 .4rem; }
+h1 { font-size: 1.5rem; margin: 0 0 .25rem; } h2, h3 { font-size: 1.1rem; margin: 1.75rem 0 .4rem; }
 p { margin: .25rem 0; } .summary { margin-top: 1rem; padding: .6rem .8rem; border: 1px solid #888; }
 .wide { overflow-x: auto; } table { border-collapse: collapse; width: 100%; font-variant-numeric: tabular-nums; }
 th, td { text-align: left; vertical-align: top; padding: .3rem .6rem .3rem 0; border-bottom: 1px solid #ccc; }
@@ -34,16 +35,26 @@ tr { break-inside: avoid; } thead { display: table-header-group; }
 
 def as_html(outline: Outline) -> str:
     """The comparison as a page of its own; all text of the sheets is escaped."""
+    return page(f"{outline.title}: {outline.compared}", [article(outline)])
+
+
+def page(title: str, body: Sequence[str]) -> str:
+    """Pieces of HTML as a page that needs no other file; ``title`` is plain text."""
     head = f'<meta charset="utf-8">\n<meta name="viewport" content="width=device-width, initial-scale=1">\n' \
-           f"<title>{escape(outline.title)}: {escape(outline.compared)}</title>\n<style>\n{STYLE}\n</style>"
-    body = [f"<h1>{escape(outline.title)}</h1>", f"<p>{escape(outline.compared)}</p>",
-            *(f"<p>{escape(note)}</p>" for note in outline.notes),
-            f'<p class="summary">{escape(outline.summary)}</p>', *(_part(part) for part in outline.parts)]
+           f"<title>{escape(title)}</title>\n<style>\n{STYLE}\n</style>"
     return f'<!DOCTYPE html>\n<html lang="en">\n<head>\n{head}\n</head>\n<body>\n' + "\n".join(body) \
         + "\n</body>\n</html>\n"
 
 
-def _part(part: Part) -> str:
+def article(outline: Outline, level: int = 1) -> str:
+    """The comparison as a piece of a page, its title a heading of that ``level``."""
+    return "\n".join([f"<h{level}>{escape(outline.title)}</h{level}>", f"<p>{escape(outline.compared)}</p>",
+                      *(f"<p>{escape(note)}</p>" for note in outline.notes),
+                      f'<p class="summary">{escape(outline.summary)}</p>',
+                      *(_part(part, level + 1) for part in outline.parts)])
+
+
+def _part(part: Part, level: int) -> str:
     changes = any(row.change for row in part.rows)
     head = "".join(f'<th scope="col">{name}</th>' for name in
                    ("What", "Old", "New", *(["Change"] if changes else [])))
@@ -52,7 +63,7 @@ def _part(part: Part) -> str:
     if part.heading == _FOLDED:
         table = f"<details><summary>{len(part.rows)} in all</summary>\n{table}\n</details>"
     shares = _shares(part.shares) if part.shares else ""
-    return f"<section>\n<h2>{escape(part.heading)}</h2>\n{table}\n{shares}</section>"
+    return f"<section>\n<h{level}>{escape(part.heading)}</h{level}>\n{table}\n{shares}</section>"
 
 
 def _shares(table: ShareTable) -> str:

@@ -11,10 +11,14 @@ _MARKS = re.compile(r"([\\`*_\[\]<>|~#])")
 _CODE = ("Formulas and steps",)
 
 
-def as_markdown(outline: Outline) -> str:
-    """The comparison in Markdown; nothing that a sheet says can end a cell or become markup."""
-    blocks = [f"# {escaped(outline.title)}", escaped(outline.compared), *(escaped(note) for note in outline.notes),
-              escaped(outline.summary), *(_part(part) for part in outline.parts)]
+def as_markdown(outline: Outline, level: int = 1) -> str:
+    """The comparison in Markdown, its title a heading of that ``level``.
+
+    Nothing that a sheet says can end a cell or become markup.
+    """
+    blocks = [f"{'#' * level} {escaped(outline.title)}", escaped(outline.compared),
+              *(escaped(note) for note in outline.notes), escaped(outline.summary),
+              *(_part(part, level + 1) for part in outline.parts)]
     return "\n\n".join(blocks) + "\n"
 
 
@@ -30,12 +34,12 @@ def code(text: str) -> str:
     return f"{fence} {plain} {fence}" if "`" in plain else f"{fence}{plain}{fence}"
 
 
-def _part(part: Part) -> str:
+def _part(part: Part, level: int) -> str:
     columns = ["", "", "Old", "New", *(["Change"] if any(row.change for row in part.rows) else []),
                *(["Follows from"] if any(row.because for row in part.rows) else [])]
     rows = [_line(columns), _line("---" for _ in columns)]
     rows += [_line(_cells(row, columns, part.heading in _CODE)) for row in part.rows]
-    blocks = [f"## {part.heading}", "\n".join(rows), *(_shares(part.shares) if part.shares else ())]
+    blocks = [f"{'#' * level} {part.heading}", "\n".join(rows), *(_shares(part.shares) if part.shares else ())]
     return "\n\n".join(blocks)
 
 

@@ -41,9 +41,16 @@ class ShareTable:
                      for at, cause in enumerate(self.causes))
 
 
+def by_result(comparison: Data) -> dict[str, Data]:
+    """The attribution by symbol in the order of the results, which a comparison read from JSON has lost."""
+    found = comparison.get("attribution") or {}
+    order = [one["symbol"] for one in comparison.get("results") or ()]
+    return {symbol: found[symbol] for symbol in order if symbol in found} | found
+
+
 def share_table(comparison: Data) -> ShareTable | None:
     """The table; None where no result was changed. Without columns, its notes say why."""
-    found, note = comparison.get("attribution") or {}, comparison.get("attribution_note") or ""
+    found, note = by_result(comparison), comparison.get("attribution_note") or ""
     if not found and not note:
         return None
     parts = {symbol: {part["text"]: part["number"] for part in _told(one)} for symbol, one in found.items()}

@@ -1,12 +1,15 @@
 """What a comparison is asked to read to a record: a spec, a record, an issued PDF, or one of them in git."""
 from __future__ import annotations
 
-import io
 from dataclasses import dataclass
 from pathlib import Path, PurePosixPath
+from typing import TYPE_CHECKING
 
 from calcpack.errors import CommandError, Fault, nearest
 from calcpack.record import Record, read_record
+
+if TYPE_CHECKING:
+    from calcpack.package.links import Texts
 
 SPECS = (".yaml", ".yml")
 RECORDS = (".json",)
@@ -17,11 +20,15 @@ ISSUED_IN = "issued"
 
 @dataclass(frozen=True, slots=True)
 class Found:
-    """The bytes that were found, the path they belong to, and the name that messages give them."""
+    """The bytes that were found, the path they belong to, and the name that messages give them.
+
+    ``then`` is the revision of git and the path there, where they are from git.
+    """
 
     content: bytes
     path: Path
     name: str
+    then: tuple[str, str] | None = None
 
 
 def load(text: str, base: Path | None = None) -> Record:
@@ -57,6 +64,11 @@ def load(text: str, base: Path | None = None) -> Record:
                              expected="a file in " + ", ".join((*SPECS, *RECORDS, *ISSUED))))
 
 
+def content_of(text: str, base: Path | None = None) -> bytes:
+    """The bytes of what ``text`` names, a path or ``REV:path`` in git; raises as :func:`load` for what is not there."""
+    return _find(text, base if base is not None else Path.cwd()).content
+
+
 def folder_of(text: str, base: Path | None = None) -> Path:
     """The folder that the spec of what ``text`` names lies in; a kept record's is the one above ``issued/``."""
     folder = base if base is not None else Path.cwd()
@@ -80,7 +92,8 @@ def _find(text: str, folder: Path) -> Found:
         raise CommandError(Fault(f"{text!r} names a revision and no file",
                                  expected="REV:path, such as v1.0:specs/a.yaml"))
     from calcpack.revisions.git import repository
-    return Found(repository(folder).content(revision, inside), folder / PurePosixPath(inside), text)
+    return Found(repository(folder).content(revision, inside), folder / PurePosixPath(inside), text,
+                 (revision, inside))
 
 
 def _content(path: Path) -> bytes:
@@ -101,7 +114,21 @@ def _solved(found: Found) -> Record:
     from calcpack.pipeline import solve_spec
     from calcpack.spec.source import source_of_bytes
     source_of_bytes(found.content, found.name)       # refuses what is no text, with its place
-    return solve_spec(found.path, text=found.content.decode("utf-8"), name=found.name)
+    return solve_spec(found.path, text=found.content.decode("utf-8"), name=found.name, beside=_beside_then(found))
+
+
+def _beside_then(found: Found) -> Texts | None:
+    """The specs that stood beside one at its revision, where it takes values from them; None for those of today."""
+    from calcpack.package.glance import is_spec
+    from calcpack.package.links import Text, takes_from_others
+    if found.then is None or not takes_from_others(found.path, {found.path: Text(found.content, found.name)}):
+        return None
+    from calcpack.revisions.git import repository
+    revision, inside = found.then
+    folder = found.path.parent
+    there = repository(folder if folder.is_dir() else Path.cwd()).beside(revision, inside)
+    return {folder / name: Text(content, f"{revision}:{PurePosixPath(inside).parent / name}")
+            for name, content in there.items() if is_spec(content)}
 
 
 def _record(content: bytes, name: str) -> Record:
@@ -115,11 +142,12 @@ def _record(content: bytes, name: str) -> Record:
 def _carried(found: Found) -> Record:
     """The record that an issued PDF carries as its attached file ``*.json``."""
     import pikepdf
+
+    from calcpack.issuing.attached import carried_files
     try:
-        with pikepdf.open(io.BytesIO(found.content)) as document:
-            attached = {name: spec.get_file().read_bytes() for name, spec in document.attachments.items()
-                        if name.lower().endswith(RECORDS)}
-    except pikepdf.PdfError as error:
+        attached = {name: content for name, content in carried_files(found.content).items()
+                    if name.lower().endswith(RECORDS)}
+    except (pikepdf.PdfError, pikepdf.PasswordError) as error:
         raise CommandError(Fault(f"{found.name} cannot be read as a PDF", detail=str(error))) from None
     if len(attached) != 1:
         carries = "several files that may be its record" if attached else "no record"

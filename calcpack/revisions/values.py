@@ -2,22 +2,35 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from math import isclose
 from typing import Any
 
 from calcpack.revisions.pairs import Entry, by, kind_of, paired
-from calcpack.revisions.printed import change, change_percent, quantity_text, same_print
+from calcpack.revisions.printed import SAME_IN_SI, change, change_percent, quantity_text, same_print
 
 
 def inputs(old: Mapping[str, Any], new: Mapping[str, Any]) -> list[dict[str, Any]]:
-    """The inputs whose value changed, with both as printed and as written."""
+    """The inputs whose value changed, with both as printed and as written.
+
+    ``taken_from`` names the value of another sheet, where the new one is taken from it.
+    """
     found = []
     for symbol, before, after in paired(by("symbol", old["inputs"]), by("symbol", new["inputs"])):
-        if before and after and same_print(before, after, exact=True):
+        if before and after and _same_input(before, after):
             continue
+        origin = (after or {}).get("from")
         found.append({"symbol": symbol, "title": (after or before)["title"], **_moved(before, after, exact=True),
                       "old_written": before and before.get("written"),
-                      "new_written": after and after.get("written")})
+                      "new_written": after and after.get("written"),
+                      **({"taken_from": f"{origin['number']}.{origin['symbol']}"} if origin else {})})
     return found
+
+
+def _same_input(before: Entry, after: Entry) -> bool:
+    """Whether an input is the same; one that two sheets have handed on may be printed with more digits than before."""
+    if before.get("from") and after.get("from"):
+        return isclose(before["value"], after["value"], rel_tol=SAME_IN_SI)
+    return same_print(before, after, exact=True)
 
 
 def results(old: Mapping[str, Any], new: Mapping[str, Any]) -> list[dict[str, Any]]:

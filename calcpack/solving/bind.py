@@ -10,7 +10,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
 
-from calcpack.errors import CalcpackError, Fault, SpecError, UnitError, nearest
+from calcpack.errors import CalcpackError, Fault, NoAnswerError, SpecError, UnitError, nearest
 from calcpack.formula.dimension import TEMPERATURE
 from calcpack.methods import Method, methods
 from calcpack.plan.facts import InputNeed
@@ -18,10 +18,12 @@ from calcpack.plan.laid import LaidInput, LaidPlan
 from calcpack.plan.lay import lay
 from calcpack.plan.outputs import measure_of_kind, measure_of_unit
 from calcpack.plan.plan import Plan
+from calcpack.record.carried import Carried
+from calcpack.solving.carrying import reading_of
 from calcpack.solving.own import add_own_steps
 from calcpack.solving.series import Opened, close_series, kind_faults, open_series
 from calcpack.spec.drafts import SERIES
-from calcpack.units import Reading, kind_of_unit, print_unit, read_quantity
+from calcpack.units import Reading, kind_of_unit, print_unit, read_quantity, shown_with_unit
 
 if TYPE_CHECKING:
     from calcpack.spec import Spec
@@ -44,18 +46,24 @@ class Bound:
     written: Mapping[str, str]
 
 
-def bind(spec: Spec, overrides: Mapping[str, str] | None = None,
-         earlier: tuple[Fault, ...] = ()) -> Bound:
+def bind(spec: Spec, overrides: Mapping[str, str] | None = None, earlier: tuple[Fault, ...] = (),
+         carried: Mapping[str, Carried | CalcpackError] | None = None) -> Bound:
     """Bind ``spec``; ``overrides`` replace input values, ``earlier`` are faults already found.
+
+    ``carried`` has, by input, what is taken from other sheets, or why it cannot be had.
 
     Raises
     ------
     SpecError
         With every fault, the earlier ones first, in the order of the file.
+    NoAnswerError
+        Where nothing is wrong, and a sheet that a value is taken from has no answer.
     """
-    binder = _Binder(spec, dict(overrides or {}), bool(earlier))
+    binder = _Binder(spec, dict(overrides or {}), carried or {}, bool(earlier))
     bound = binder.bind()
     faults = [*earlier, *binder.faults]
+    if not faults and binder.unanswered:
+        raise NoAnswerError(binder.unanswered)
     if faults or bound is None:
         raise SpecError(sorted(faults, key=lambda fault: (fault.place.line, fault.place.column)
                                if fault.place else (0, 0)))
@@ -63,11 +71,16 @@ def bind(spec: Spec, overrides: Mapping[str, str] | None = None,
 
 
 class _Binder:
-    def __init__(self, spec: Spec, overrides: dict[str, str], faulty: bool = False) -> None:
+    def __init__(self, spec: Spec, overrides: dict[str, str], carried: Mapping[str, Carried | CalcpackError],
+                 faulty: bool = False) -> None:
         self.spec = spec
         self.faulty = faulty
         self.overrides = overrides
+        self.carried = carried
         self.faults: list[Fault] = []
+        self.unanswered: list[Fault] = []
+        # Inputs without a value: the steps that use them are not blamed for it.
+        self.lost: set[str] = set()
         self.readings: dict[str, Reading] = {}
         self.written: dict[str, str] = {}
         # Whether the options say which plan is meant; else nothing that only hangs on the plan is blamed.
@@ -94,7 +107,7 @@ class _Binder:
         self.guarded(lambda: close_series(plan, self.spec, opened) if opened else add_own_steps(plan, self.spec),
                      ("steps",))
         laid, faults = lay(plan, inputs, self.spec.sheet.units,
-                           lambda fault, path: self.spec.located(fault, *path), self.spec.dropped)
+                           lambda fault, path: self.spec.located(fault, *path), self.spec.dropped | self.lost)
         # A method's steps cannot be proved where an option, a fluid or an input of its own is at fault.
         self.faults += [fault for fault in faults if fault.place is not None or not self.faults]
         self.faults += kind_faults(laid, self.spec, opened) if opened else []
@@ -194,6 +207,8 @@ class _Binder:
     def reading(self, symbol: str, need: InputNeed | None) -> Reading | None:
         """Read an input and keep it; None and a fault where it cannot be read."""
         given = self.spec.case.inputs.get(symbol)
+        if given is not None and given.link is not None and symbol not in self.overrides:
+            return self.taken(symbol, need)
         text = self.overrides.get(symbol, given.value if given else (need.default if need else ""))
         place = self.spec.place("case", "inputs", symbol, "value") if given and symbol not in self.overrides else None
         kind = need.kind if need else _own_kind(symbol, text)
@@ -209,6 +224,28 @@ class _Binder:
             return None
         self.readings[symbol] = reading
         self.written[symbol] = text.strip()
+        self.tolerance(symbol, reading)
+        return reading
+
+    def taken(self, symbol: str, need: InputNeed | None) -> Reading | None:
+        """The reading of an input that another sheet gives; None and a fault where it cannot be had."""
+        link, place = self.spec.case.inputs[symbol].link, self.spec.place("case", "inputs", symbol, "from")
+        one = self.carried.get(symbol) or SpecError(Fault(f"nothing here gives the value of {link}"))
+        if isinstance(one, CalcpackError):
+            kept = self.unanswered if isinstance(one, NoAnswerError) else self.faults
+            kept += [fault.at(place) for fault in one.faults]
+            self.lost.add(symbol)
+            return None
+        try:
+            reading = reading_of(one, need.kind if need else _own_kind(symbol, f"1 {one.unit}"), str(link))
+            if need is not None:
+                _require_range(reading, need, f"{reading.text} {one.unit}")
+        except UnitError as error:
+            self.faults += [fault.at(place) for fault in error.faults]
+            self.lost.add(symbol)
+            return None
+        self.readings[symbol] = reading
+        self.written[symbol] = shown_with_unit(reading.text, one.unit)
         self.tolerance(symbol, reading)
         return reading
 
@@ -241,7 +278,7 @@ class _Binder:
 
     def idle(self, laid: LaidPlan, plan: Plan) -> None:
         """An input that nothing uses is a slip: of spelling, or left over from another option."""
-        if self.faults or self.faulty:
+        if self.faults or self.faulty or self.lost:
             # What would have used it may be the very thing at fault.
             return
         used = {name for step in laid.steps for name in step.uses} | {one.symbol for one in self.spec.results}

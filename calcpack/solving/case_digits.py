@@ -8,7 +8,7 @@ from calcpack.errors import NoAnswerError
 from calcpack.formula.tree import symbols_of
 from calcpack.plan.laid import LaidStep
 from calcpack.solving.cases import cell_formulas, solved_row
-from calcpack.solving.program import REDUCTIONS
+from calcpack.solving.tables import REDUCTIONS
 
 if TYPE_CHECKING:
     from calcpack.solving.printing import Printing

@@ -7,19 +7,20 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Mapping
-from dataclasses import replace
+from functools import partial
 from typing import Any
 
 from calcpack.errors import Fault, NoAnswerError, RootError
 from calcpack.formula.evaluate import Compiled, compiled
 from calcpack.formula.text import to_text
 from calcpack.formula.tree import CONSTANTS, Node, PropertyCall, Symbol, symbols_of
-from calcpack.plan.laid import LaidDemand, LaidPlan, LaidStep, is_level
+from calcpack.plan.laid import LaidDemand, LaidPlan, LaidStep
 from calcpack.plan.steps import CasesStep, Closing, LookupStep, OptimumStep, RootStep, SeriesStep, TotalStep
-from calcpack.solving.cases import RowError, row_by_row
+from calcpack.solving.cases import row_by_row
 from calcpack.solving.roots import Optimum, Root, find_optimum, find_root
-from calcpack.units import read_quantity, shown_with_unit, unit
-from calcpack.units.digits import decimals_for, number_text
+from calcpack.solving.tables import REDUCTIONS, interpolated
+from calcpack.solving.troubles import Teller, UnmetError, arithmetic
+from calcpack.units import read_quantity, shown_with_unit
 
 Instruction = tuple[int, Callable[[list[Any]], Any]]
 
@@ -59,8 +60,7 @@ class Program:
         self.compiled_trees: dict[Node, Callable[[list[Any]], Any]] = {}
         self.readers: dict[tuple[str, str, tuple[str, ...]], Callable[..., float]] = {}
         self.looked_up: list[dict[tuple[float, ...], float]] = []
-        self.print_units = {one.symbol: (one.unit, is_level(one.measure))
-                            for one in (*plan.inputs.values(), *plan.steps)}
+        self.teller = Teller(plan)
         self.spare = len(self.slots)
         self.block = self._block(list(plan.items), 0)[0]
 
@@ -96,9 +96,9 @@ class Program:
             for slot, function in block:
                 values[slot] = function(values)
         except NoAnswerError as error:
-            raise (_named(error, self.step_at[slot]) if slot in self.step_at else error) from None
+            raise (self.teller.named(error, self.step_at[slot]) if slot in self.step_at else error) from None
         except (ArithmeticError, ValueError, TypeError) as error:
-            raise NoAnswerError(Fault(_arithmetic(error), hint=_where(self.step_at[slot]), detail=str(error))) from None
+            raise arithmetic(error, self.step_at[slot]) from None
 
     def require_real(self, values: list[Any]) -> None:
         """Raise where a step's value is no finite real number."""
@@ -161,31 +161,16 @@ class Program:
         return solve
 
     def _found(self, step: LaidStep, at: Callable[[float], float], low: float, high: float) -> float:
-        if isinstance(step.step, RootStep):
-            try:
-                self.roots[step.symbol] = root = find_root(at, low, high)
-            except RootError as error:
-                raise self._bracketed(error, step, low, high) from None
-            return root.value
-        self.optima[step.symbol] = optimum = find_optimum(at, low, high, greatest=step.step.sense == "greatest")
+        unknown = partial(self.teller.value, step.symbol)
+        try:
+            if isinstance(step.step, RootStep):
+                self.roots[step.symbol] = root = find_root(at, low, high, unknown, partial(self.teller.residual, step))
+                return root.value
+            self.optima[step.symbol] = optimum = find_optimum(at, low, high, greatest=step.step.sense == "greatest",
+                                                              unknown=unknown)
+        except RootError as error:
+            raise self.teller.bracketed(error, step, low, high) from None
         return optimum.value
-
-    def _bracketed(self, error: RootError, step: LaidStep, low: float, high: float) -> RootError:
-        """The same error with the bracket in the engineer's units and formulas, where it gives no hint of its own."""
-        ends = (f"{to_text(step.trees[name])} = {self._told(step.symbol, value)}"
-                for name, value in (("low", low), ("high", high)))
-        bracket = "the bracket runs from {} to {}".format(*ends)
-        return RootError(replace(fault, hint=fault.hint or bracket) for fault in error.faults)
-
-    def _told(self, name: str, value: float) -> str:
-        """A value for a message, in the unit it is printed in; a temperature level with its everyday twin."""
-        shown_in, level = self.print_units[name]
-        number = shown_in.from_si(value)
-        text = shown_with_unit(number_text(number, max(0, decimals_for(number, 6))), shown_in)
-        if not level:
-            return text
-        everyday = unit("°C" if shown_in.symbol == "K" else "°F")
-        return f"{text} ({shown_with_unit(number_text(everyday.from_si(value), 2), everyday)})"
 
     def residual_at(self, symbol: str, trial: float, values: Mapping[str, float]) -> float:
         """A root's equation, or an optimum's objective, with ``trial`` for the unknown and its body run again [SI].
@@ -220,9 +205,9 @@ class Program:
 
         def require(values: list[Any]) -> float:
             if not holds(values):
-                found = ", ".join(f"{name} = {self._told(name, values[self.slots[name]])}" for name in names)
-                raise _UnmetError(Fault(demand.text, found=found, hint=demand.hint,
-                                        expected=to_text(demand.condition)))
+                found = self.teller.values(names, {name: values[self.slots[name]] for name in names})
+                raise UnmetError(Fault(demand.text, found=found, hint=demand.hint,
+                                       expected=to_text(demand.condition)))
             return 0.0
         return require
 
@@ -273,7 +258,11 @@ class Program:
     def _lookup(self, step: LaidStep) -> Callable[[list[Any]], float]:
         of = compiled(step.tree, self.slots)
         points = [(read_quantity(x).value, read_quantity(y).value) for x, y in step.step.points]
-        return lambda v: interpolated(points, of(v))
+        written_in = read_quantity(step.step.points[0][0]).unit
+
+        def told(x: float) -> str:
+            return shown_with_unit(f"{written_in.from_si(x):.6g}", written_in)
+        return lambda v: interpolated(points, of(v), told)
 
     def _total(self, step: LaidStep) -> Callable[[list[Any]], float]:
         pick = self.plan.step(step.step.table).step.columns.index(step.step.column)
@@ -299,10 +288,6 @@ class Program:
         return tabulate
 
 
-REDUCTIONS: dict[str, Callable[[list[float]], float]] = {
-    "min": min, "max": max, "sum": math.fsum, "mean": lambda values: math.fsum(values) / len(values)}
-
-
 def _remembering(reader: Callable[..., float], found: dict[tuple[float, ...], float]) -> Callable[..., float]:
     """The reader, with what it gave kept in ``found`` by the two values it was asked with."""
     def read(first: float, second: float) -> float:
@@ -313,42 +298,3 @@ def _remembering(reader: Callable[..., float], found: dict[tuple[float, ...], fl
             known = found[first, second] = reader(first, second)
         return known
     return read
-
-
-def interpolated(points: list[tuple[float, float]], x: float) -> float:
-    """Linear interpolation in ascending ``points``; outside them is an error, not a guess."""
-    if not points[0][0] <= x <= points[-1][0]:
-        raise NoAnswerError(Fault("the value looked up is outside the table", found=f"{x:.6g} (SI)",
-                                  expected=f"from {points[0][0]:.6g} to {points[-1][0]:.6g} (SI)"))
-    (x0, y0), (x1, y1) = neighbours(points, x)
-    return y0 + (y1 - y0) * (x - x0) / (x1 - x0)
-
-
-def neighbours(points: list[tuple[float, float]], x: float) -> tuple[tuple[float, float], tuple[float, float]]:
-    """The two points of the table between which ``x`` lies."""
-    index = next((i for i in range(1, len(points)) if x <= points[i][0]), len(points) - 1)
-    return points[index - 1], points[index]
-
-
-def _where(step: LaidStep) -> str:
-    return f"see step {step.id}, {step.symbol} = {step.step.formula}"
-
-
-class _UnmetError(NoAnswerError):
-    """A demand that does not hold: its own words are the message, whatever step was being solved."""
-
-
-def _named(error: NoAnswerError, step: LaidStep) -> NoAnswerError:
-    """The same error, naming the innermost step that met it."""
-    if isinstance(error, (_UnmetError, RowError)) or any(fault.what.startswith("step ") for fault in error.faults):
-        return error
-    title = step.step.title[:1].lower() + step.step.title[1:]
-    return type(error)(replace(fault, what=f"step {step.id}, {step.symbol} ({title}): {fault.what}")
-                       for fault in error.faults)
-
-
-def _arithmetic(error: Exception) -> str:
-    if isinstance(error, ZeroDivisionError):
-        return "a division by zero"
-    return "a root or logarithm of a number that has none" if isinstance(error, ValueError) \
-        else "arithmetic without a real result"

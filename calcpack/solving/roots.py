@@ -21,6 +21,11 @@ _INWARDS = (0.0, 1 / 128, 1 / 64, 1 / 32, 1 / 16, 1 / 8, 1 / 4, 3 / 8, 1 / 2)
 _SCAN = 16
 
 
+Told = Callable[[float], str]
+PLAIN: Told = "{:.6g}".format
+"""Words a value for a message where its unit is not known."""
+
+
 @dataclass(frozen=True, slots=True)
 class Root:
     """A root [SI], the bracket used, and the number of evaluations."""
@@ -31,8 +36,11 @@ class Root:
     evaluations: int
 
 
-def find_root(residual: Callable[[float], float], low: float, high: float) -> Root:
+def find_root(residual: Callable[[float], float], low: float, high: float, unknown: Told = PLAIN,
+              left: Told = PLAIN) -> Root:
     """The root of ``residual`` between ``low`` and ``high``.
+
+    ``unknown`` and ``left`` word a value of the unknown and of the residual.
 
     Raises
     ------
@@ -43,14 +51,14 @@ def find_root(residual: Callable[[float], float], low: float, high: float) -> Ro
     """
     from scipy.optimize import brentq
     if not (math.isfinite(low) and math.isfinite(high) and low < high):
-        raise RootError(Fault("the bracket is empty", found=f"from {low:.6g} to {high:.6g} (SI)"))
+        raise RootError(Fault("the bracket is empty", found=f"from {unknown(low)} to {unknown(high)}"))
     a, at_a, trouble_a = _usable_end(residual, low, high)
     b, at_b, trouble_b = _usable_end(residual, high, low)
     if at_a * at_b > 0.0:
         if a >= b:
             raise RootError(Fault("the equation can be evaluated nowhere but in the middle of its bracket",
-                                  found=f"from {low:.6g} to {high:.6g} (SI)", hint=trouble_a or trouble_b))
-        a, at_a, b, at_b = _scan(residual, (a, at_a), (b, at_b), trouble_a or trouble_b)
+                                  found=f"from {unknown(low)} to {unknown(high)}", hint=trouble_a or trouble_b))
+        a, at_a, b, at_b = _scan(residual, (a, at_a), (b, at_b), trouble_a or trouble_b, left)
     if at_a == 0.0 or at_b == 0.0:
         return Root(a if at_a == 0.0 else b, a, b, 2)
     known = {a: at_a, b: at_b}
@@ -75,7 +83,8 @@ CURVE = 8
 """Steps of the curve that is printed around an optimum."""
 
 
-def find_optimum(objective: Callable[[float], float], low: float, high: float, *, greatest: bool) -> Optimum:
+def find_optimum(objective: Callable[[float], float], low: float, high: float, *, greatest: bool,
+                 unknown: Told = PLAIN) -> Optimum:
     """Where ``objective`` is greatest (or least) between ``low`` and ``high``.
 
     The objective is taken to have one hump; the curve of equal steps over the
@@ -89,7 +98,7 @@ def find_optimum(objective: Callable[[float], float], low: float, high: float, *
     """
     from scipy.optimize import minimize_scalar
     if not (math.isfinite(low) and math.isfinite(high) and low < high):
-        raise RootError(Fault("the bounds of the optimum are empty", found=f"from {low:.6g} to {high:.6g} (SI)"))
+        raise RootError(Fault("the bounds of the optimum are empty", found=f"from {unknown(low)} to {unknown(high)}"))
     sign = -1.0 if greatest else 1.0
     a = _usable_end(objective, low, high)[0]
     b = _usable_end(objective, high, low)[0]
@@ -118,7 +127,7 @@ def _usable_end(residual: Callable[[float], float], end: float, other: float) ->
 
 
 def _scan(residual: Callable[[float], float], first: tuple[float, float], last: tuple[float, float],
-          trouble: str | None) -> tuple[float, float, float, float]:
+          trouble: str | None, left: Told) -> tuple[float, float, float, float]:
     """Look for a change of sign inside, since the ends have the same."""
     before = first
     for index in range(1, _SCAN):
@@ -131,4 +140,4 @@ def _scan(residual: Callable[[float], float], first: tuple[float, float], last: 
             return *before, *here
         before = here
     raise RootError(Fault("the equation has no root in its bracket", detail=trouble, found=(
-        f"left minus right is {first[1]:.4g} at the low end and {last[1]:.4g} at the high end (SI)")))
+        f"left minus right is {left(first[1])} at the low end and {left(last[1])} at the high end")))

@@ -22,6 +22,8 @@ if TYPE_CHECKING:
 PATH = ("case", "series")
 TABLE = "n_rows"
 NOTE = "States, diagrams and cautions are those of the row shown; balances and limits are checked in every row."
+GROUNDS = {"sum": "sum over the rows", "min": "least of the rows", "max": "greatest of the rows",
+           "mean": "arithmetic mean of the rows"}
 LATE = "The engineer's own steps on all rows"
 
 
@@ -89,11 +91,13 @@ def _replaced(plan: Plan, spec: Spec, symbol: str) -> InputNeed:
 
 def _front(plan: Plan, spec: Spec, rows: Rows, replaced: dict[str, InputNeed], shown: int) -> list[Step | Demand]:
     steps: list[Step | Demand] = [
-        Step(column.symbol, column.title, text, column.print_unit or None, note="given by the row")
+        Step(column.symbol, column.title, text, column.print_unit or None, reference=rows.source,
+             note="given by the row")
         for column, text in zip(rows.columns, rows.rows[shown].values, strict=True)]
     for symbol, need in replaced.items():
         path = (*PATH, "inputs", symbol)
         steps.append(Step(symbol, need.title, spec.case.series.inputs[symbol], _usual_unit(need),
+                          reference="relation that the spec states for each row",
                           note="takes the place of an input, by row", place=spec.place(*path), path=path))
         steps += _range_demands(need)
     return steps
@@ -127,12 +131,13 @@ def close_series(plan: Plan, spec: Spec, opened: Opened) -> None:
     section.cases(TABLE, "The calculation solved for each row: number of rows", given=given,
                   bound=tuple(opened.replaced),
                   columns=tuple(columns), rows=opened.rows.rows, source=opened.rows.source,
-                  shown=opened.rows.index(written.shown), note=NOTE)
+                  shown=opened.rows.index(written.shown), note=NOTE,
+                  reference="the steps before this one, solved anew for each row")
     for symbol, column, title in sums:
-        section.total(symbol, ("sum", column, TABLE), title)
+        section.total(symbol, ("sum", column, TABLE), title, reference=GROUNDS["sum"])
     account_figures(section, account)
     for index, total in enumerate(written.totals):
-        section.total(total.symbol, (total.by, total.of, TABLE), total.title,
+        section.total(total.symbol, (total.by, total.of, TABLE), total.title, reference=GROUNDS[total.by],
                       place=spec.place(*PATH, "totals", index, "of"))
     add_own_steps(plan, spec, leaving={step.symbol for step in spec.steps} - late, title=LATE)
 

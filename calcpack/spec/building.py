@@ -49,9 +49,14 @@ def _case(written: schema.WrittenCase) -> model.Case:
     return model.Case(
         method=written.method, options=dict(written.options),
         fluids={role: _fluid(fluid) for role, fluid in written.fluids.items()},
-        inputs={symbol: model.Input(symbol=symbol, **_fields(entry))
-                for symbol, entry in written.inputs.items()},
+        inputs={symbol: _input(symbol, entry) for symbol, entry in written.inputs.items()},
         safety=_safety(written.safety), series=_series(written.series))
+
+
+def _input(symbol: str, written: schema.WrittenInput) -> model.Input:
+    number, _, name = (written.link or "").rpartition(".")
+    link = model.Link(number, name) if written.link else None
+    return model.Input(**{**_fields(written), "symbol": symbol, "value": written.value or "", "link": link})
 
 
 def _series(written: schema.WrittenSeries | None) -> model.Series | None:

@@ -59,8 +59,22 @@ class Signoff:
 
 
 @dataclass(frozen=True, slots=True)
+class Link:
+    """A value of another sheet, by the sheet's number and the symbol there."""
+
+    number: str
+    symbol: str
+
+    def __str__(self) -> str:
+        return f"{self.number}.{self.symbol}"
+
+
+@dataclass(frozen=True, slots=True)
 class Input:
-    """A design input: ``value`` and ``tol`` as written, quantities whose kind is not known yet."""
+    """A design input: ``value`` and ``tol`` as written, quantities whose kind is not known yet.
+
+    Where ``link`` says which sheet the value is taken from, ``value`` is empty.
+    """
 
     symbol: str
     value: str
@@ -68,6 +82,7 @@ class Input:
     source: str | None = None
     title: str | None = None
     note: str | None = None
+    link: Link | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -235,6 +250,8 @@ class Revision:
     date: str
     note: str
     by: str | None = None
+    checked: str | None = None
+    approved: str | None = None
 
 
 @dataclass(frozen=True, slots=True)

@@ -72,8 +72,11 @@ class Mapping:
 Node = Scalar | Listing | Mapping
 
 
-def read_tree(source: Source) -> tuple[Mapping, tuple[Fault, ...]]:
+def read_tree(source: Source, noun: str = "spec", opening: str = "calcpack: 1") -> tuple[Mapping, tuple[Fault, ...]]:
     """The tree of a spec, and the faults that leave the rest readable.
+
+    Another kind of file that is written like a spec is called ``noun`` in
+    messages, and starts with the line ``opening``.
 
     Raises
     ------
@@ -81,7 +84,7 @@ def read_tree(source: Source) -> tuple[Mapping, tuple[Fault, ...]]:
         If the text is not YAML, is empty, is no mapping, nests too deep, or
         holds a second document; with all faults found until there.
     """
-    builder = _Builder(source)
+    builder = _Builder(source, noun, opening)
     try:
         tree = builder.document()
     except yaml.YAMLError as error:
@@ -94,15 +97,17 @@ def read_tree(source: Source) -> tuple[Mapping, tuple[Fault, ...]]:
 class _Builder:
     """One pass over the events of a text; each method takes the events of one node."""
 
-    def __init__(self, source: Source) -> None:
+    def __init__(self, source: Source, noun: str, opening: str) -> None:
         self.source = source
+        self.noun = noun
+        self.expected = f"a mapping that starts with '{opening}'"
         self.faults: list[Fault] = []
         self.events: Iterator = yaml.parse(source.text, Loader=yaml.CSafeLoader)
 
     def document(self) -> Mapping:
         next(self.events)                                      # the stream starts
         if not isinstance(next(self.events), yaml.DocumentStartEvent):
-            raise self.stop("the spec is empty", 0, 0, expected="a mapping that starts with 'calcpack: 1'")
+            raise self.stop(f"the {self.noun} is empty", 0, 0, expected=self.expected)
         tree = self.node(next(self.events), 1)
         next(self.events)                                      # the document ends
         after = next(self.events)
@@ -114,15 +119,14 @@ class _Builder:
     def top(self, tree: Node) -> Mapping:
         if isinstance(tree, Mapping):
             return tree
-        expected = "a mapping that starts with 'calcpack: 1'"
         if isinstance(tree, Scalar) and not tree.has_value:
-            raise self.stop("the spec is empty", tree.start, tree.end, expected=expected)
-        raise self.stop("the spec must be a mapping of keys", tree.start, tree.end,
-                        expected=expected, found=kind_of(tree))
+            raise self.stop(f"the {self.noun} is empty", tree.start, tree.end, expected=self.expected)
+        raise self.stop(f"the {self.noun} must be a mapping of keys", tree.start, tree.end,
+                        expected=self.expected, found=kind_of(tree))
 
     def node(self, event: yaml.Event, depth: int) -> Node:
         if depth > MAX_DEPTH:
-            raise self.stop(f"the spec nests deeper than {MAX_DEPTH} levels", *_span(event))
+            raise self.stop(f"the {self.noun} nests deeper than {MAX_DEPTH} levels", *_span(event))
         if isinstance(event, yaml.AliasEvent):
             start, end = _span(event)
             self.fault(f"an alias, '*{event.anchor}', is not allowed", start, end,

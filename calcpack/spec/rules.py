@@ -82,11 +82,22 @@ def fluids(draft: Draft) -> Iterator[Wrong]:
                 expected=f"a sum of 1, within {COMPOSITION_TOLERANCE}"), at_key=True)
 
 
+def one_value_each(draft: Draft) -> Iterator[Wrong]:
+    """An input has a value of its own or takes one from another sheet."""
+    for symbol, entry in draft.document.case.inputs.items():
+        path: Path = ("case", "inputs", symbol)
+        if (entry.value is None) == (entry.link is None) and not draft.is_touched(*path):
+            both = entry.value is not None
+            yield Wrong((*path, "from") if both else path, Fault(
+                f"input {symbol!r} has {'two values' if both else 'no value'}",
+                expected="either value or from"), at_key=True, spoils="key" if both else "entry")
+
+
 def inputs(draft: Draft) -> Iterator[Wrong]:
-    """Outside a draft every input has a source."""
+    """Outside a draft every input has a source; one that is taken from another sheet has that sheet."""
     status = draft.document.sheet.status
     for symbol, entry in draft.document.case.inputs.items():
-        if entry.source is None and status != "draft":
+        if entry.source is None and entry.link is None and status != "draft":
             yield Wrong(("case", "inputs", symbol, "source"), Fault(
                 f"input {symbol!r} has no source",
                 expected="the id of a reference or an assumption, or words",
@@ -191,5 +202,5 @@ def _sources(draft: Draft) -> Iterator[tuple[Path, str]]:
 
 
 RULES: tuple[Callable[[Draft], Iterator[Wrong]], ...] = (
-    purpose_and_scope, near_baseline, different_people, history, fluids, inputs, safety, series, *FORMULA_RULES,
-    limits, ids_once, sources_exist)
+    purpose_and_scope, near_baseline, different_people, history, fluids, one_value_each, inputs, safety, series,
+    *FORMULA_RULES, limits, ids_once, sources_exist)

@@ -48,7 +48,8 @@ _ANY = -math.inf
 _FROM_ZERO = -5e-324
 
 QUANTITIES: tuple[SafetyQuantity, ...] = (
-    _q("charge", "mass", "Working fluid in the largest circuit.", "12 kg"),
+    _q("charge", "mass", "Working fluid in the largest circuit; of a cascade, in the low one.", "12 kg"),
+    _q("charge_high", "mass", "Working fluid in the high circuit of a cascade.", "18 kg"),
     _q("room_volume", "volume", "Volume of the room that a leak fills.", "300 m³"),
     _q("room_area", "area", "Floor area of that room.", "75 m²"),
     _q("mounting_height", "length", "Height of the unit in a room for people: 0.6 m floor, 1.0 m window, 1.8 m wall, "
@@ -58,6 +59,8 @@ QUANTITIES: tuple[SafetyQuantity, ...] = (
     _q("enclosure_ventilation", "volume flow", "Air drawn from that enclosure.", "250 m³/h"),
     _q("concentration", "number", "Share of the working fluid in the room's air, by volume, where it is known.",
        "0.002 %", _FROM_ZERO, 1.0),
+    _q("concentration_high", "number", "Share of the high circuit's working fluid in the room's air, by volume.",
+       "0.001 %", _FROM_ZERO, 1.0),
     _q("PS", "pressure", "Maximum allowable pressure of the working fluid's circuit.", "25 bar(g)"),
     _q("PS_secondary", "pressure", "Maximum allowable pressure of the secondary circuits.", "10 bar(g)"),
     _q("vessel_volume", "volume", "Volume of the largest vessel of the working fluid's circuit.", "40 L"),

@@ -23,6 +23,7 @@ from calcpack.spec.words import (
     Identity,
     LevelText,
     Line,
+    LinkText,
     PressureText,
     QuantityText,
     RevisionMark,
@@ -116,9 +117,13 @@ class WrittenFluid(Written):
 
 
 class WrittenInput(Written):
-    """A design input. The short form is its value alone."""
+    """A design input: its value, or the sheet and symbol that it is taken from. The short form is the value alone."""
 
-    value: QuantityText = _key("The value with its unit.", "38 degC", "0.72")
+    model_config = ConfigDict(json_schema_extra=_one_of("value", "from"))
+    value: QuantityText | None = _key("The value with its unit.", "38 degC", "0.72", default=None)
+    link: LinkText | None = Field(
+        None, alias="from", examples=["MT-101.T_out"],
+        description="In place of a value: an input or step of another sheet, as number of the sheet, point, symbol.")
     tol: QuantityText | None = _key("Tolerance, plus and minus.", "1.0 K", default=None)
     source: Line | None = _key("Where the value is from: the id of a reference or assumption, or words.",
                                "R1", default=None)
@@ -296,6 +301,8 @@ class WrittenRevision(Written):
     date: Date = _key("Its date, year-month-day.", "2026-03-31")
     note: Text = _key("What changed and why.", "First issue.")
     by: Line | None = _key("Who made it.", default=None)
+    checked: Line | None = _key("Who checked it, where no issue in 'issued' says so.", default=None)
+    approved: Line | None = _key("Who approved it, where no issue in 'issued' says so.", default=None)
 
 
 class Document(Written):

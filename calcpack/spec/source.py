@@ -93,8 +93,8 @@ def _is_blank(piece: str) -> bool:
     return piece[:2] in ("\\x", "\\u", "\\U") and chr(int(piece[2:], 16)).isspace()
 
 
-def open_source(path: Path, name: str | None = None) -> Source:
-    """The source that the file at ``path`` holds.
+def open_source(path: Path, name: str | None = None, noun: str = "spec") -> Source:
+    """The source that the file at ``path`` holds; messages call such a file ``noun``.
 
     Raises
     ------
@@ -105,28 +105,28 @@ def open_source(path: Path, name: str | None = None) -> Source:
     try:
         if not path.is_file():
             what = f"{shown!r} is not a file" if path.exists() else f"there is no file {shown!r}"
-            raise SpecError(Fault(what, hint="give the path of a spec"))
+            raise SpecError(Fault(what, hint=f"give the path of a {noun}"))
         with path.open("rb") as stream:
             content = stream.read(MAX_BYTES + 1)
     except (OSError, ValueError) as error:       # ValueError: a NUL in the path
         raise SpecError(Fault(f"{shown!r} cannot be read", detail=str(error))) from None
-    return source_of_bytes(content, shown)
+    return source_of_bytes(content, shown, noun)
 
 
-def source_of_bytes(content: bytes, name: str) -> Source:
+def source_of_bytes(content: bytes, name: str, noun: str = "spec") -> Source:
     """The source that ``content`` holds; raises like :func:`open_source`."""
     if len(content) > MAX_BYTES:
-        raise SpecError(Fault("the spec is larger than 1 MB", Place(name, 1, 1),
-                              hint="a spec holds one sheet; keep data in files of their own"))
+        raise SpecError(Fault(f"the {noun} is larger than 1 MB", Place(name, 1, 1),
+                              hint=f"a {noun} holds one sheet; keep data in files of their own"))
     text = _decoded(content, name)
     source = Source.of(name, text.removeprefix("\ufeff"), hashlib.sha256(content).hexdigest())
     _refuse_unseen(source)
     return source
 
 
-def source_of_text(text: str, name: str) -> Source:
+def source_of_text(text: str, name: str, noun: str = "spec") -> Source:
     """The source that ``text`` holds; raises like :func:`open_source`."""
-    return source_of_bytes(text.encode("utf-8", "surrogatepass"), name)
+    return source_of_bytes(text.encode("utf-8", "surrogatepass"), name, noun)
 
 
 def _decoded(content: bytes, name: str) -> str:

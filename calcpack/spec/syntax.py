@@ -19,7 +19,7 @@ _SENTENCES: tuple[tuple[str, str, str | None], ...] = (
     ("unknown escape character", "a backslash starts no known escape in double quotes",
      "use single quotes, or write the backslash twice"),
     ("invalid Unicode character escape", "an escape in double quotes gives no character", None),
-    ("maximum nesting depth", "the spec nests too deep", None),
+    ("maximum nesting depth", "the text nests too deep", None),
     ("did not find expected node content", "a value is missing here", None),
     ("expected comment or line break", "nothing may follow the sign that starts a block of text",
      "start the text on the next line"),
@@ -28,7 +28,7 @@ _SENTENCES: tuple[tuple[str, str, str | None], ...] = (
     ("while scanning an alias", "an alias is not allowed", "put a text that starts with '*' in quotes"),
     ("while scanning a tag", "a tag is not allowed", "put a text that starts with '!' in quotes"),
     ("while parsing a tag", "a tag is not allowed", "put a text that starts with '!' in quotes"),
-    ("did not find expected <document start>", "the spec does not continue here",
+    ("did not find expected <document start>", "the text does not continue here",
      "the keys at the top start in the first column"),
 )
 

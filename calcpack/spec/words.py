@@ -33,6 +33,9 @@ _REVISION = r"([A-HJ-NPRT-WY]{1,3}|[0-9]{1,3})"
 _DATE = r"[0-9]{4}-[0-9]{2}-[0-9]{2}"
 
 
+LINK_EXPECTED = "the number of a sheet, a point and one of its symbols, such as MT-101.T_out"
+
+
 def told(fault: Fault) -> PydanticCustomError:
     """The error by which a rule hands its own fault through pydantic."""
     return PydanticCustomError("written", "{what}", {"what": fault.what, "fault": fault})
@@ -91,6 +94,15 @@ def _symbol(text: str) -> str:
                     hint="add a part, such as " + repr(text + "_1"))
     if len(text) > MAX_SYMBOL:
         raise wrong(f"a symbol is longer than {MAX_SYMBOL} characters", f"at most {MAX_SYMBOL} characters")
+    return text
+
+
+def _link(text: str) -> str:
+    number, dot, symbol = text.rpartition(".")
+    if not dot:
+        raise wrong(f"{clipped(text)} names no value of a sheet", LINK_EXPECTED)
+    Matches(_NUMBER, "a sheet number", LINK_EXPECTED)(number)
+    _symbol(symbol)
     return text
 
 
@@ -182,6 +194,7 @@ HeatCapacityText = Annotated[str, AfterValidator(Reads(
 DensityText = Annotated[str, AfterValidator(Reads("density", above=0.0, expected="above 0 kg/m³")), _schema()]
 ShareText = Annotated[str, AfterValidator(Reads(
     "number", above=-5e-324, most=1.0, expected="0 to 1, or 0 % to 100 %")), _WRITTEN_NUMBER]
+LinkText = Annotated[str, AfterValidator(_link), _schema(rf"{_NUMBER}\.{SYMBOL}")]
 BoundText = Annotated[str, AfterValidator(_bound), _WRITTEN_NUMBER]
 FormulaText = Annotated[str, AfterValidator(_parses(parse)), _WRITTEN_NUMBER]
 ConditionText = Annotated[str, AfterValidator(_parses(parse_condition)), _schema()]

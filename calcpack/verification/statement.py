@@ -49,7 +49,8 @@ def _same(engine: Data, other: Data) -> bool:
 def _words(verification: Data, method: str, done: Data) -> str:
     worst = done["worst"]
     memory = f", {done['from_memory']} of them in part from memory" if done["from_memory"] else ""
-    text = (f"published checks solved by the method {method}: {done['cases']} cases of {done['rows']} published "
+    cases = "1 case" if done["cases"] == 1 else f"{done['cases']} cases"
+    text = (f"published checks solved by the method {method}: {cases} of {done['rows']} published "
             f"examples{memory}, {done['values']} values; run {verification['date']}, set {verification['test_set']}: "
             f"{'all within what is allowed' if done['pass'] else 'NOT all within what is allowed'}")
     if worst is None:

@@ -13,6 +13,7 @@ from calcpack.checks import examine
 from calcpack.errors import CalcpackError
 from calcpack.methods import methods
 from calcpack.methods.starter import starter
+from calcpack.pipeline import spec_files
 from calcpack.plan.plan import Section
 
 SPECS = Path(__file__).parents[2] / "specs"
@@ -20,8 +21,13 @@ OPERATOR = re.compile(r" [+-] ")
 
 
 def texts() -> list[Any]:
-    """A spec's text a case: the example package, and what each method's starter writes."""
-    found = [pytest.param(path.read_text("utf-8"), id=path.stem) for path in sorted(SPECS.glob("*.yaml"))]
+    """A spec's text a case: the example package, and what each method's starter writes.
+
+    A value that one sheet of the package takes from another is written out, as a text stands alone.
+    """
+    alone = {path.stem: path.read_text("utf-8").replace("{from: MT-102.W_dot_net}", "{value: 320 kW, source: R1}")
+             for path in spec_files([SPECS])}
+    found = [pytest.param(text, id=name) for name, text in alone.items()]
     return found + [pytest.param(starter(name, {}), id=name) for name in methods()]
 
 

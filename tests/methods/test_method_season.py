@@ -78,6 +78,14 @@ def pump():
     return record_of(PUMP)
 
 
+def test_what_rows_totals_and_account_add_names_its_ground(plain, pump):
+    written = {"COP_hp", "Q_dot_hp", "W_dot_hp"}
+    for record in (plain, pump):
+        bare = [step["symbol"] for step in record.data["steps"]
+                if step["kind"] != "property" and step["symbol"] not in written and not step["reference"]]
+        assert bare == []
+
+
 def value(record, symbol):
     return record.step(symbol)["value"]
 

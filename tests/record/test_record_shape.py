@@ -64,6 +64,18 @@ def test_what_is_no_record_is_told(tmp_path, text, what):
     assert caught.value.faults[0].what == what.format(path=path)
 
 
+@pytest.mark.parametrize(("part", "value", "found"), [
+    ("sheet", 3, "sheet is not a mapping"), ("sheet", {}, "sheet.number is not a text, sheet.revision is not a text"),
+    ("steps", [{}], "steps is not a list of mappings with a text symbol"),
+    ("limits", 1, "limits is not a list of mappings with a text id")])
+def test_a_damaged_record_is_told_with_the_part_that_is_wrong(tmp_path, arranged, part, value, found):
+    path = tmp_path / "r.json"
+    path.write_text(json.dumps({**build_record(arranged("none")).data, part: value}), "utf-8")
+    with pytest.raises(CommandError, match="is a damaged record") as caught:
+        read_record(path)
+    assert caught.value.faults[0].found.startswith(found)
+
+
 def test_a_record_of_another_format_is_told(tmp_path, arranged):
     path = tmp_path / "r.json"
     path.write_text(json.dumps({**build_record(arranged("none")).data, "calcpack": 2}), "utf-8")

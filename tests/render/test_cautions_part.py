@@ -97,7 +97,8 @@ def test_a_working_line_is_taken_apart() -> None:
 
 def test_safety_quantities_are_printed_as_written_with_their_source(page: str) -> None:
     shown = words(part(page, "cautions"))
-    assert "charge Working fluid in the largest circuit. 60" in shown and "below-ground" in shown
+    assert "charge Working fluid in the largest circuit; of a cascade, in the low one. 60" in shown
+    assert "below-ground" in shown
     assert 'href="#reference-R1"' in part(page, "cautions")
 
 

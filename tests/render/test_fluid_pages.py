@@ -15,7 +15,8 @@ from calcpack.fluids.register.groups import GROUPS, absent, grouped
 from calcpack.pipeline import solve_spec
 from calcpack.record import Record
 from calcpack.render.fluid_names import fluid_page_name
-from calcpack.render.site import MANIFEST, build_site
+from calcpack.render.manifest import NAME as MANIFEST
+from calcpack.render.site import build_site
 
 
 @pytest.fixture(scope="module")

@@ -17,7 +17,8 @@ from calcpack.errors import CommandError
 from calcpack.record import Record
 from calcpack.render import assets, site
 from calcpack.render.assets import templates_folder
-from calcpack.render.site import MANIFEST, build_site
+from calcpack.render.manifest import NAME as MANIFEST
+from calcpack.render.site import build_site
 
 
 @pytest.fixture(scope="module")
@@ -105,7 +106,7 @@ def test_a_failed_build_leaves_everything_as_it_was(small: Record, tmp_path: Pat
     def fails(*_: object, **__: object) -> int:
         raise CommandError(site.Fault("no"))
 
-    monkeypatch.setattr(site, "write_pdf", fails)
+    monkeypatch.setattr(site, "pdf_bytes", fails)
     with pytest.raises(CommandError):
         build_site([(small, None)], tmp_path / "new" / "site")
     assert not (tmp_path / "new").exists()

@@ -5,7 +5,7 @@ from pathlib import Path
 
 import pytest
 
-from calcpack.pipeline import solve_spec
+from calcpack.pipeline import solve_spec, spec_files
 from calcpack.render.sheet import sheet_html
 from calcpack.verification.published import published_folder
 
@@ -16,5 +16,5 @@ PUBLISHED = ("0_2_slopes_of_the_adiabat", "4_14_optimum_liao_by_method", "7_04_p
 @pytest.fixture(scope="session")
 def example_pages() -> dict[str, str]:
     """The pages of the example specs and of some published examples, by name."""
-    paths = [*sorted((ROOT / "specs").glob("*.yaml")), *(published_folder() / f"{name}.yaml" for name in PUBLISHED)]
+    paths = [*spec_files([ROOT / "specs"]), *(published_folder() / f"{name}.yaml" for name in PUBLISHED)]
     return {path.stem: sheet_html(solve_spec(path)) for path in paths}

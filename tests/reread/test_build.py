@@ -30,7 +30,7 @@ def test_a_page_that_cannot_be_had_from_its_print_is_not_written(tmp_path: Path,
     assert good.exit_code == 0
     before = {path: path.read_bytes() for path in (tmp_path / "site").rglob("*") if path.is_file()}
     monkeypatch.setattr(site, "sheet_html", _broken)
-    bad = CliRunner().invoke(main, ["build", SPEC, "-o", str(tmp_path / "site"), "--no-pdf", "-q"])
+    bad = CliRunner().invoke(main, ["build", SPEC, "-o", str(tmp_path / "site"), "--no-pdf", "-q", "--fresh"])
     assert bad.exit_code == 3
     assert "MT-101: step 3.1" in bad.stderr and "nothing was written" in bad.stderr
     assert {path: path.read_bytes() for path in (tmp_path / "site").rglob("*") if path.is_file()} == before

@@ -74,7 +74,7 @@ def test_other_sheets_and_other_files_are_left_alone(tmp_path, sheet, cooler):
 def test_an_issued_record_that_cannot_be_read_is_told(tmp_path, sheet, cooler):
     issue(tmp_path, cooler, "A")
     (tmp_path / "issued/BC-7-B.json").write_text("{", "utf-8")
-    with pytest.raises(CommandError, match="may be the revision before"):
+    with pytest.raises(CommandError, match="may be an issue of a sheet"):
         baseline_for(*sheet("C"))
 
 

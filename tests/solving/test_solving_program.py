@@ -5,7 +5,8 @@ import pytest
 
 from calcpack.errors import NoAnswerError
 from calcpack.plan.plan import Plan
-from calcpack.solving.program import Program, interpolated, neighbours
+from calcpack.solving.program import Program
+from calcpack.solving.tables import interpolated, neighbours
 
 
 def section_of():
@@ -50,7 +51,7 @@ def test_a_lookup_outside_its_table_is_no_guess(run, at):
     section.lookup("eta", "Q", POINTS, "Efficiency", "data sheet")
     fault = fault_of(run, plan, {"Q": at})
     assert fault.what == "step 1.1, eta (efficiency): the value looked up is outside the table"
-    assert fault.expected == "from 0 to 30000 (SI)"
+    assert fault.expected == "from 0 kW to 30 kW"
 
 
 def test_neighbours_of_a_point_of_the_table():
@@ -170,3 +171,25 @@ def test_no_root_is_told_with_the_innermost_step(run):
 def test_a_program_runs_again_for_other_inputs(laid):
     program = Program(laid(nested_roots(), {"total": "1"})[0])
     assert [round(program.run({"total": total})["x"], 9) for total in (9.0, 3.0, 9.0)] == [6.0, 2.0, 6.0]
+
+
+def test_a_root_that_is_not_there_is_told_in_the_units_of_print_with_the_inputs_behind_it(run):
+    plan, section = section_of()
+    section.root("T", "Q - UA * (T - T_0)", ("T_0", "T_0 + 5 K"), "Temperature of the wall", "degC")
+    plan.close("T")
+    fault = fault_of(run, plan, {"Q": "90 kW", "UA": "10 kW/K", "T_0": "20 degC"})
+    assert fault.what == "step 1.1, T (temperature of the wall): the equation has no root in its bracket"
+    assert fault.found == "left minus right is 90.00 kW at the low end and 40.00 kW at the high end"
+    assert fault.hint == ("the bracket runs from T_0 = 293.150 K (20.00 °C) to T_0 + 5 K = 298.150 K (25.00 °C); it "
+                          "hangs on the inputs Q, UA, T_0")
+
+
+def test_a_fault_with_many_inputs_behind_it_names_those_that_its_step_reads(run):
+    plan, section = section_of()
+    names = [f"a_{index}" for index in range(7)]
+    section.formula("b", " - ".join(names), "Seven")
+    section.root("x", "x - b - c", ("7", "9"), "Unknown")
+    plan.close("x")
+    fault = fault_of(run, plan, dict.fromkeys((*names, "c"), "1"))
+    assert fault.hint == "the bracket runs from 7 = 7.00000 to 9 = 9.00000; it hangs on the input c and through " \
+                         "other steps on more"

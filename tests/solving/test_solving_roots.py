@@ -55,7 +55,7 @@ def test_no_change_of_sign_is_no_root_and_the_ends_are_told():
         find_root(lambda x: x * x + 1.0, 0.0, 2.0)
     fault = caught.value.faults[0]
     assert fault.what == "the equation has no root in its bracket"
-    assert fault.found == "left minus right is 1 at the low end and 5 at the high end (SI)"
+    assert fault.found == "left minus right is 1 at the low end and 5 at the high end"
     assert caught.value.exit_status == 3
 
 

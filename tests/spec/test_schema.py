@@ -117,7 +117,7 @@ def test_examples_follow_their_own_schema():
 
 def test_keys_are_found_by_path_through_short_forms_and_lists():
     schema = json_schema()
-    assert keys_at(schema, ("case", "inputs", "anything")) == {"value", "tol", "source", "title", "note"}
+    assert keys_at(schema, ("case", "inputs", "anything")) == {"value", "from", "tol", "source", "title", "note"}
     assert keys_at(schema, ("steps", 3, "choice", 0)) == {"when", "value", "otherwise", "label"}
     assert keys_at(schema, ("signoff", "checked")) == {"name", "date"}
     assert keys_at(schema, ("sheet", "title")) == set()

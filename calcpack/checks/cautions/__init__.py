@@ -36,30 +36,35 @@ CAUTIONS: tuple[Callable[[Case], Caution | None], ...] = (
 
 
 OF_FLUID: tuple[Callable[[Case], Caution | None], ...] = (
-    pressure.gas_or_liquid, pressure.freezing_at_rest, *fluid_hazard.CAUTIONS, operation.stability,
-    operation.below_atmosphere, operation.dry_ice)
-"""Those that hang on the fluid alone, made again for the second circuit of a cascade; the safety quantities of the
-spec speak of one circuit, so what needs them is left to the first.
+    pressure.gas_or_liquid, pressure.freezing_at_rest, *fluid_hazard.CAUTIONS, *release.OF_CIRCUIT, *charge.CAUTIONS,
+    *room.OF_CIRCUIT, equipment.evacuation, relief.secondary, operation.stability, operation.below_atmosphere,
+    operation.dry_ice)
+"""Those that hang on the fluid, its charge and the room, made for each circuit of a cascade; of vessels, pipes and
+relief devices the spec speaks once, so what needs them is left to the first.
 """
 
 
-def _other_circuits(solution: Solution) -> list[str]:
-    """The roles of working fluids beside the first: those with numbered states of their own that condense."""
-    roles = dict.fromkeys(point.fluid for point in solution.plan.facts.states if point.fluid != "wf")
-    return [role for role in roles if Case(solution).working is not None and Case(solution, role).working is not None]
+def _found(case: Case) -> list[Caution]:
+    """The cautions of the first circuit; beside another one, those of the fluid say of which they speak."""
+    several = bool(case.other_circuits)
+    pairs = [(caution, one) for caution in CAUTIONS if (one := caution(case)) is not None]
+    return [_naming(one, case) if several and caution in OF_FLUID else one for caution, one in pairs]
 
 
 def _of_fluid(case: Case) -> list[Caution]:
     """The cautions of a second working fluid, told apart by its role and designation."""
     found = (caution(case) for caution in OF_FLUID)
-    return [replace(one, id=f"{one.id}-{case.role}", topic=f"{one.topic}, {case.working.designation}")
-            for one in found if one is not None]
+    return [replace(_naming(one, case), id=f"{one.id}-{case.role}") for one in found if one is not None]
+
+
+def _naming(one: Caution, case: Case) -> Caution:
+    return replace(one, topic=f"{one.topic}, {case.working.designation}")
 
 
 def cautions(solution: Solution) -> tuple[dict[str, Any], ...]:
     """The cautions that concern a sheet: triggered, not triggered, or not evaluated with the reason."""
     case = Case(solution)
-    found = [one for caution in CAUTIONS if (one := caution(case)) is not None]
-    found += [one for role in _other_circuits(solution) for one in _of_fluid(Case(solution, role))]
+    found = _found(case)
+    found += [one for role in case.other_circuits for one in _of_fluid(Case(solution, role))]
     hazards = list(dict.fromkeys(one.hazard for one in found))
     return tuple(one.entry() for one in sorted(found, key=lambda one: hazards.index(one.hazard)))

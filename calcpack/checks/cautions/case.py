@@ -13,6 +13,9 @@ from calcpack.plan.facts import StatePoint, StreamLine
 from calcpack.solving.solution import Solution
 from calcpack.spec.safety import BY_NAME
 
+OF_CIRCUIT = frozenset({"charge", "concentration"})
+"""Safety quantities that each circuit has for itself; those of the role ``wf_high`` end in ``_high``."""
+
 
 @dataclass(frozen=True, slots=True)
 class Case:
@@ -34,6 +37,13 @@ class Case:
     def points(self) -> list[StatePoint]:
         """The numbered states of the working fluid."""
         return [point for point in self.solution.plan.facts.states if point.fluid == self.role]
+
+    @property
+    def other_circuits(self) -> list[str]:
+        """The roles of working fluids beside the first: those with numbered states of their own that condense."""
+        roles = dict.fromkeys(point.fluid for point in self.solution.plan.facts.states if point.fluid != "wf")
+        first = Case(self.solution).working is not None
+        return [role for role in roles if first and Case(self.solution, role).working is not None]
 
     @property
     def streams(self) -> list[StreamLine]:
@@ -87,12 +97,17 @@ class Case:
 
     def given(self, name: str) -> float | None:
         """A safety quantity of the spec [SI], None where it is not given."""
-        text = self.solution.spec.case.safety.values.get(name)
-        return None if text is None else BY_NAME[name].value(text, self.solution.p_atm)
+        key = self._key(name)
+        text = self.solution.spec.case.safety.values.get(key)
+        return None if text is None else BY_NAME[key].value(text, self.solution.p_atm)
+
+    def _key(self, name: str) -> str:
+        """What the spec calls a safety quantity of this circuit."""
+        return name + self.role.removeprefix("wf") if name in OF_CIRCUIT else name
 
     def missing(self, *names: str) -> str:
         """Which of these safety quantities are not given, in words; empty where all are."""
-        gone = [name for name in names if self.given(name) is None]
+        gone = [self._key(name) for name in names if self.given(name) is None]
         return f"not given under case.safety: {', '.join(gone)}" if gone else ""
 
     @property

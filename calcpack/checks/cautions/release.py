@@ -141,5 +141,8 @@ def carbamate(case: Case) -> Caution | None:
     return T9.evaluated(True, "both on this sheet", "both fluids in one plant") if both else None
 
 
-CAUTIONS = (displaced, oxygen, ammonia_escape, ammonia_at_work, ammonia_danger, carbon_dioxide_at_work, carbon_dioxide,
-            carbon_dioxide_danger, carbamate)
+OF_CIRCUIT = (displaced, oxygen, ammonia_escape, ammonia_at_work, ammonia_danger, carbon_dioxide_at_work,
+              carbon_dioxide, carbon_dioxide_danger)
+"""Those that each circuit of a cascade has for itself."""
+
+CAUTIONS = (*OF_CIRCUIT, carbamate)

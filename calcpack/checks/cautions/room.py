@@ -251,9 +251,13 @@ def total_warming(case: Case) -> Caution | None:
                    E=(case.given("annual_energy") * year / 3.6e6, "kWh/a"),
                    beta=(case.given("grid_emission") * 3.6e6, "kg/kWh"))
     return M14.evaluated(False, f"{total.value / 1000.0:.4g} t of CO2 equivalent", "none: information",
-                         _which_potential(case) + ("; recovery of 95 % is the rule's" if recovery is None else ""),
+                         _which_potential(case) + ("; recovery of 95 % is the rule's" if recovery is None else "")
+                         + ("; the charge of the first circuit alone" if case.other_circuits else ""),
                          lines(leak, total))
 
 
 CAUTIONS = (ventilation, below_ground, alternative_ventilation, extract, glowing, detector, vent, bund, detection,
             leak_checks, total_warming)
+
+OF_CIRCUIT = (ventilation, alternative_ventilation, extract, detector, vent, bund, detection, leak_checks)
+"""Those that each circuit of a cascade has for itself; the energy of the plant counts once."""

@@ -1,7 +1,8 @@
 """Steps for a mass of ideal gas in a cylinder: corners, isentropic changes, heat at constant volume or pressure."""
 from __future__ import annotations
 
-from calcpack.plan.equipment.gas import HEAT_CAPACITY, Gas
+from calcpack.plan.equipment import grounds
+from calcpack.plan.equipment.gas import Gas
 from calcpack.plan.plan import Plan, Section
 
 WIDEST = "0.45"
@@ -16,14 +17,18 @@ def constants(section: Section, gas: Gas) -> None:
     if gas.constant:
         section.formula("R", "cp * (gamma - 1) / gamma", "Gas constant", "kJ/(kg·K)",
                         reference="ideal gas: cp - cv = R")
-        section.formula("cv", "cp / gamma", "Heat capacity at constant volume", "kJ/(kg·K)")
-        section.formula("T_z", "273.15 K", "Temperature at which energy and entropy are taken as zero", "degC")
-        section.formula("p_z", "1 bar", "Pressure at which entropy is taken as zero", "bar")
+        section.formula("cv", "cp / gamma", "Heat capacity at constant volume", "kJ/(kg·K)",
+                        reference="definition of the heat capacity ratio: cp over cv")
+        section.formula("T_z", "273.15 K", "Temperature at which energy and entropy are taken as zero", "degC",
+                        reference=grounds.CELSIUS)
+        section.formula("p_z", "1 bar", "Pressure at which entropy is taken as zero", "bar",
+                        reference=grounds.ZERO_OF_PRESSURE)
         return
     section.formula("R_m", "8.314462618 J/(mol·K)", "Molar gas constant", "J/(mol·K)",
                     reference="CODATA 2018, exact, to ten digits")
     section.property("M", f"M({gas.role})", "Molar mass of the gas")
-    section.formula("R", "R_m / M", "Gas constant of the gas", "kJ/(kg·K)")
+    section.formula("R", "R_m / M", "Gas constant of the gas", "kJ/(kg·K)",
+                    reference="molar gas constant over molar mass")
 
 
 def volume(section: Section, number: str) -> str:
@@ -43,7 +48,7 @@ def energy(section: Section, gas: Gas, number: str) -> str:
     title = f"Specific internal energy at corner {number}"
     if gas.constant:
         return section.formula(f"u_{number}", f"cv * (T_{number} - T_z)", title, "kJ/kg",
-                               reference=HEAT_CAPACITY)
+                               reference=grounds.HEAT_CAPACITY)
     return section.property(f"u_{number}", f"u({gas.role}, T=T_{number})", title)
 
 
@@ -52,7 +57,7 @@ def enthalpy(section: Section, gas: Gas, number: str) -> str:
     title = f"Specific enthalpy at corner {number}"
     if gas.constant:
         return section.formula(f"h_{number}", f"cp * (T_{number} - T_z)", title, "kJ/kg",
-                               reference=HEAT_CAPACITY)
+                               reference=grounds.HEAT_CAPACITY)
     return section.property(f"h_{number}", f"h({gas.role}, T=T_{number})", title)
 
 
@@ -61,7 +66,7 @@ def entropy(section: Section, gas: Gas, number: str) -> str:
     title = f"Specific entropy at corner {number}"
     if gas.constant:
         return section.formula(f"s_{number}", f"cp * ln(T_{number} / T_z) - R * ln(p_{number} / p_z)", title,
-                               "kJ/(kg·K)", reference=HEAT_CAPACITY)
+                               "kJ/(kg·K)", reference=grounds.HEAT_CAPACITY)
     return section.property(f"s_{number}", f"s({gas.role}, p=p_{number}, T=T_{number})", title)
 
 
@@ -81,7 +86,8 @@ def isentrope(plan: Plan, section: Section, gas: Gas, start: str, end: str, *, r
         far = f"T_{start} {sign} ({ratio})^{WIDEST}"
         section.root(f"T_{end}", f"s_{end} - s_{start}",
                      (f"T_{start}", far) if squeezes else (far, f"T_{start}"),
-                     title, "degC", note="the temperature at which the entropy is that of the corner before")
+                     title, "degC", note="the temperature at which the entropy is that of the corner before",
+                     reference="second law: a reversible adiabat keeps the entropy")
     pressure(section, end)
     entropy(section, gas, end)
     if not gas.constant:
@@ -92,7 +98,8 @@ def heated_to_energy(plan: Plan, section: Section, gas: Gas, start: str, end: st
     """Temperature and internal energy at ``end``, reached at constant volume by the specific heat ``heat``."""
     title = f"Temperature at corner {end}, after the heat at constant volume"
     if gas.constant:
-        section.formula(f"T_{end}", f"T_{start} + {heat} / cv", title, "degC")
+        section.formula(f"T_{end}", f"T_{start} + {heat} / cv", title, "degC",
+                        reference="first law at constant volume: heat is the rise of u")
         energy(section, gas, end)
         return
     section.property(f"cv_{start}", f"cv({gas.role}, T=T_{start})",
@@ -104,6 +111,6 @@ def heated_to_energy(plan: Plan, section: Section, gas: Gas, start: str, end: st
                 "give less heat")
     section.root(f"T_{end}", f"u_{end} - u_{start} - {heat}",
                  (f"T_{start}", f"min(T_{start} + {heat} / cv_{start}, T_most)"),
-                 title, "degC")
+                 title, "degC", reference="first law at constant volume: heat is the rise of u")
     energy(section, gas, end)
     plan.close(f"T_{end}")

@@ -3,6 +3,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.exchanger import Zone, rows
 from calcpack.plan.facts import ExchangerView
 from calcpack.plan.plan import Plan, Section
@@ -43,6 +44,7 @@ def coupled_profile(plan: Plan, section: Section, it: Coupled) -> str:
             (T_cold, "Cold side, temperature", f"T({it.cold.fluid}, p={it.cold.pressure}, h={h_cold})", None),
             (dT, "Difference", f"{T} - {T_cold}", "K")),
         f"Smallest temperature difference in the {it.title.lower()}",
-        note="Rows at the zone boundaries of the hot side and between them in equal steps of enthalpy.")
+        note="Rows at the zone boundaries of the hot side and between them in equal steps of enthalpy.",
+        reference=grounds.PROFILE)
     plan.facts.exchangers.append(ExchangerView(it.title, symbol, it.duty, h, T, T_cold, dT))
     return symbol

@@ -4,6 +4,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 
+from calcpack.plan.equipment import grounds
 from calcpack.plan.equipment.streams import Stream
 from calcpack.plan.facts import ExchangerView
 from calcpack.plan.plan import Plan, Section
@@ -80,7 +81,7 @@ def profile(plan: Plan, section: Section, it: Exchanger) -> str:
              None),
             (dT, "Difference", it.difference(T_stream, T), "K")),
         f"Smallest temperature difference in the {it.title.lower()}",
-        note="Rows at the zone boundaries and between them in equal steps of enthalpy.")
+        note="Rows at the zone boundaries and between them in equal steps of enthalpy.", reference=grounds.PROFILE)
     hot, cold = (T_stream, T) if it.stream.gives_heat else (T, T_stream)
     plan.facts.exchangers.append(ExchangerView(it.title, symbol, it.duty, h, hot, cold, dT))
     return symbol
@@ -110,13 +111,14 @@ def conductance(section: Section, it: Exchanger) -> str:
     parts = []
     for index, zone in enumerate(it.zones):
         Q = section.formula(f"Q_dot_{zone.tag}", f"{it.m_dot} * ({zone.warm_h} - {zone.cold_h})",
-                            f"Heat of the zone: {zone.name}", "kW")
+                            f"Heat of the zone: {zone.name}", "kW", reference=grounds.HEAT_OF_FLOW)
         mean = log_mean(section, f"LMTD_{zone.tag}", boundary[index], boundary[index + 1],
                         f"Log-mean temperature difference, {zone.name}")
         parts.append(section.formula(f"UA_{zone.tag}", f"{Q} / {mean}", f"Conductance of the zone: {zone.name}",
-                                     "kW/K"))
+                                     "kW/K", reference=grounds.CONDUCTANCE))
     whole = parts[0] if len(parts) == 1 else section.formula(
-        f"UA_{it.tag}", " + ".join(parts), f"Conductance of the {it.title.lower()}", "kW/K")
+        f"UA_{it.tag}", " + ".join(parts), f"Conductance of the {it.title.lower()}", "kW/K",
+        reference=grounds.CONDUCTANCES)
     section.plan.facts.conductances[f"dT_min_{it.tag}"] = whole
     return whole
 
@@ -133,14 +135,15 @@ def _boundary_differences(section: Section, it: Exchanger) -> list[str]:
         # Named by the zone, so that another zone before it does not rename it at the next revision.
         symbol = f"dT_{it.tag}_cold" if index == 0 else f"dT_{it.zones[index - 1].tag}"
         result.append(section.formula(symbol, it.difference(T_stream, T_fluid),
-                                      f"Temperature difference, {where}", "K"))
+                                      f"Temperature difference, {where}", "K", reference=grounds.TWO_SIDES))
     return result
 
 
 def _boundary_temperature(section: Section, it: Exchanger, zone: Zone) -> str:
     role = it.stream.role
     h = section.formula(f"h_{role}_{zone.tag}", it.stream_enthalpy(zone.warm_h),
-                        f"{role.capitalize()} enthalpy at the warm end of {zone.name}", "kJ/kg")
+                        f"{role.capitalize()} enthalpy at the warm end of {zone.name}", "kJ/kg",
+                        reference=grounds.ALONG)
     return section.property(f"T_{role}_{zone.tag}", f"T({role}, p={it.stream.name('p')}, h={h})",
                             f"{role.capitalize()} temperature at the warm end of {zone.name}")
 

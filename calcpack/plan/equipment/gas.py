@@ -5,6 +5,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 
 from calcpack.errors import Fault, SpecError
+from calcpack.plan.equipment import grounds
 from calcpack.plan.facts import Flow, MachineEnds, StatePoint
 from calcpack.plan.plan import Plan, Section
 
@@ -12,8 +13,6 @@ GAS_VALUES: Mapping[str, str] = {
     "air-standard": "air as an ideal gas, heat capacities varying with temperature",
     "cold-air": "an ideal gas of constant heat capacities, which are inputs"}
 """Values of the option that says how a gas is described."""
-
-HEAT_CAPACITY = "ideal gas of constant heat capacity"
 
 
 @dataclass(frozen=True, slots=True)
@@ -90,8 +89,9 @@ def zeros(section: Section, gas: Gas) -> None:
         section.formula("R", "cp * (gamma - 1) / gamma", "Gas constant", "kJ/(kg·K)",
                         reference="ideal gas: cp - cv = R")
         section.formula("T_z", "273.15 K", "Temperature at which enthalpy and entropy are taken as zero",
-                        "degC")
-        section.formula("p_z", "1 bar", "Pressure at which entropy is taken as zero", "bar")
+                        "degC", reference=grounds.CELSIUS)
+        section.formula("p_z", "1 bar", "Pressure at which entropy is taken as zero", "bar",
+                        reference=grounds.ZERO_OF_PRESSURE)
 
 
 def caloric(section: Section, it: GasState) -> None:
@@ -104,7 +104,7 @@ def at_enthalpy(section: Section, it: GasState) -> None:
     """Temperature and entropy of a state whose pressure and enthalpy are known."""
     title = f"Temperature {it.label}"
     if it.gas.constant:
-        section.formula(it.T, f"T_z + {it.h} / cp", title, "degC")
+        section.formula(it.T, f"T_z + {it.h} / cp", title, "degC", reference=grounds.HEAT_CAPACITY)
     else:
         section.property(it.T, f"T({it.gas.role}, p={it.p}, h={it.h})", title)
     _entropy(section, it)
@@ -113,7 +113,7 @@ def at_enthalpy(section: Section, it: GasState) -> None:
 def _enthalpy(section: Section, it: GasState) -> None:
     title = f"Specific enthalpy {it.label}"
     if it.gas.constant:
-        section.formula(it.h, f"cp * ({it.T} - T_z)", title, "kJ/kg", reference=HEAT_CAPACITY)
+        section.formula(it.h, f"cp * ({it.T} - T_z)", title, "kJ/kg", reference=grounds.HEAT_CAPACITY)
     else:
         section.property(it.h, f"h({it.gas.role}, p={it.p}, T={it.T})", title)
 
@@ -122,7 +122,7 @@ def _entropy(section: Section, it: GasState) -> None:
     title = f"Specific entropy {it.label}"
     if it.gas.constant:
         section.formula(it.s, f"cp * ln({it.T} / T_z) - R * ln({it.p} / p_z)", title, "kJ/(kg·K)",
-                        reference=HEAT_CAPACITY)
+                        reference=grounds.HEAT_CAPACITY)
     else:
         section.property(it.s, f"s({it.gas.role}, p={it.p}, T={it.T})", title)
 
@@ -135,7 +135,7 @@ def isentropic_enthalpy(section: Section, start: GasState, end: GasState, word: 
     T = section.formula(f"T_{end.number}s", f"{start.T} * ({end.p} / {start.p})^((gamma - 1) / gamma)",
                         f"Temperature after isentropic {word}", "degC",
                         reference="reversible adiabat of an ideal gas: T p^((1-γ)/γ) is constant")
-    return section.formula(symbol, f"cp * ({T} - T_z)", title, "kJ/kg")
+    return section.formula(symbol, f"cp * ({T} - T_z)", title, "kJ/kg", reference=grounds.HEAT_CAPACITY)
 
 
 def compress(section: Section, start: GasState, end: GasState, work: str, machine: str,

@@ -92,7 +92,8 @@ def _polynomial(letter: str) -> str:
 
 
 def _rated_suction(section: Section, fluid: str, dew: str, pressures: tuple[str, str]) -> None:
-    section.formula("T_r", f"{dew} + dT_sh_r", "Suction temperature that the coefficients are for", "degC")
+    section.formula("T_r", f"{dew} + dT_sh_r", "Suction temperature that the coefficients are for", "degC",
+                    reference="definition of superheat: temperature above the dew point, as rated")
     for letter, word in (("rho", "Density"), ("h", "Enthalpy"), ("s", "Entropy")):
         section.property(f"{letter}_r", f"{letter}({fluid}, p={pressures[0]}, T=T_r)",
                          f"{word} of the suction gas that the coefficients are for")
@@ -111,7 +112,8 @@ def _corrected(section: Section, fluid: str, inlet: str, outlet: str, pressures:
                      "Enthalpy after isentropic compression")
     section.formula("W_dot_one", f"W_dot_r * (m_dot_one / m_dot_r) * (h_{outlet}s - h_{inlet}) / (h_rs - h_r)",
                     "Power of one compressor", "kW", reference=source)
-    section.formula("w_comp", "W_dot_one / m_dot_one", "Specific work of compression", "kJ/kg")
+    section.formula("w_comp", "W_dot_one / m_dot_one", "Specific work of compression", "kJ/kg",
+                    reference="power is mass flow times specific work, solved for the work")
     section.formula("eta_is", f"(h_{outlet}s - h_{inlet}) / w_comp", "Isentropic efficiency by the polynomials",
                     reference="isentropic efficiency: isentropic work over work of compression")
 

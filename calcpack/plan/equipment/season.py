@@ -3,6 +3,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from calcpack.plan.equipment import grounds
 from calcpack.plan.plan import Plan, Section
 from calcpack.plan.seasons import SOURCE, Season
 
@@ -12,7 +13,7 @@ CYCLING = {
               "EN 14825, degradation of units that heat water (formula and usual Cdh from memory)"),
     "air": ("{COP} * (1 - Cdh * (1 - CR))", "0.25",
             "EN 14825, degradation of units that heat air (formula and usual Cdh from memory)"),
-    "none": ("{COP}", "", "")}
+    "none": ("{COP}", "", "while it runs and while it stands the same: no loss by on and off")}
 """The coefficient of performance of a machine that switches on and off: formula, usual coefficient, source."""
 
 
@@ -75,8 +76,8 @@ def account_rows(plan: Plan, account: Account) -> tuple[str, ...]:
 
 
 def _output_rows(section: Section, account: Account) -> tuple[str, ...]:
-    section.formula("E_out_row", f"{account.power} * t_bin", "Work given in the row", "kWh")
-    section.formula("E_in_row", f"{account.heat} * t_bin", "Heat taken in the row", "kWh")
+    section.formula("E_out_row", f"{account.power} * t_bin", "Work given in the row", "kWh", reference=grounds.ENERGY)
+    section.formula("E_in_row", f"{account.heat} * t_bin", "Heat taken in the row", "kWh", reference=grounds.ENERGY)
     return account.power, account.heat, "E_out_row", "E_in_row"
 
 
@@ -92,8 +93,10 @@ def _load(plan: Plan, section: Section, account: Account) -> tuple[str, ...]:
     section.formula("x_load", "(T_limit - T_out) / (T_limit - T_design)",
                     "Part-load ratio: heat load over that at the design",
                     reference=PART_LOAD)
-    section.formula("Q_dot_load", "Q_dot_design * x_load", "Heat load", "kW")
-    section.formula("t_eq", "x_load * t_bin", "Hours at the design load that need the same heat", "h")
+    section.formula("Q_dot_load", "Q_dot_design * x_load", "Heat load", "kW",
+                    reference="definition of the part-load ratio, solved for the load")
+    section.formula("t_eq", "x_load * t_bin", "Hours at the design load that need the same heat", "h",
+                    reference="derived: heat of the row over load at the design")
     return "x_load", "Q_dot_load"
 
 
@@ -104,21 +107,26 @@ def _machine(section: Section, account: Account) -> tuple[str, ...]:
                         "look at the symbols under series.heat and series.power")
     section.formula("CR", f"min(1, Q_dot_load / {heat})", "Share of the time that the machine runs",
                     reference="heat load over heating capacity, at most 1")
-    section.formula("COP_full", f"{heat} / {account.power}", "Coefficient of performance while it runs")
+    section.formula("COP_full", f"{heat} / {account.power}", "Coefficient of performance while it runs",
+                    reference=grounds.COP)
     formula, _, source = CYCLING[account.cycling]
     section.formula("COP_row", formula.format(COP="COP_full"), "Coefficient of performance with on and off",
-                    reference=source, note="" if source else "no loss by on and off is counted")
-    section.formula("Q_dot_backup", f"max(0 kW, Q_dot_load - {heat})", "Heat that the machine lacks", "kW")
-    section.formula("E_heat_row", "Q_dot_load * t_bin", "Heat of the row", "kWh")
+                    reference=source)
+    section.formula("Q_dot_backup", f"max(0 kW, Q_dot_load - {heat})", "Heat that the machine lacks", "kW",
+                    reference="energy balance of the building: load less heat of the machine")
+    section.formula("E_heat_row", "Q_dot_load * t_bin", "Heat of the row", "kWh", reference=grounds.ENERGY)
     section.formula("E_hp_row", "(Q_dot_load - Q_dot_backup) * t_bin / COP_row",
-                    "Electricity of the machine in the row", "kWh")
-    section.formula("E_backup_row", "Q_dot_backup * t_bin", "Back-up heat of the row", "kWh")
-    section.formula("t_run_row", "CR * t_bin", "Running hours of the row", "h")
+                    "Electricity of the machine in the row", "kWh",
+                    reference="definition of the coefficient of performance, times hours of the row")
+    section.formula("E_backup_row", "Q_dot_backup * t_bin", "Back-up heat of the row", "kWh", reference=grounds.ENERGY)
+    section.formula("t_run_row", "CR * t_bin", "Running hours of the row", "h",
+                    reference="share of the time times hours of the row")
     shown = (heat, "COP_full", "CR", "COP_row", "Q_dot_backup", "E_heat_row", "E_hp_row", "E_backup_row")
     if account.cycling == "none":
         return tuple(name for name in shown if name != "COP_row")
     section.formula("E_cycling_row", "E_hp_row * (1 - COP_row / COP_full)",
-                    "Electricity lost by on and off in the row", "kWh")
+                    "Electricity lost by on and off in the row", "kWh",
+                    reference="derived: electricity less that at the full coefficient of performance")
     return shown
 
 
@@ -147,21 +155,25 @@ def account_figures(section: Section, account: Account) -> tuple[str, ...]:
 def _yield(section: Section) -> tuple[str, ...]:
     section.plan.demand("E_in_year > 0 kWh", "no heat is taken in any row", "look at the symbol under series.heat")
     return (section.formula("eta_year", "E_out_year / E_in_year",
-                            "Efficiency of the whole: work given over heat taken"),)
+                            "Efficiency of the whole: work given over heat taken", reference=grounds.EFFICIENCY),)
 
 
 def _seasonal(section: Section, account: Account) -> tuple[str, ...]:
     figures = [section.formula("SCOP_net", "(E_heat - E_backup) / E_hp",
-                               "Seasonal coefficient of performance of the machine alone")]
+                               "Seasonal coefficient of performance of the machine alone",
+                               reference="heat of the machine over its electricity, summed over the rows")]
     if account.backup == "electric":
-        section.formula("E_el", "E_hp + E_backup", "Electricity of the season", "kWh")
+        section.formula("E_el", "E_hp + E_backup", "Electricity of the season", "kWh", reference=grounds.SUM)
         figures.append(section.formula("SCOP_on", "E_heat / E_el",
                                        "Seasonal coefficient of performance with electric back-up",
                                        reference="EN 14825, SCOPon: heat over electricity while there is a load"))
     else:
-        section.formula("E_el", "E_hp", "Electricity of the season", "kWh")
-        figures.append(section.formula("E_fuel", "E_backup / eta_boiler", "Fuel of the back-up boiler", "kWh"))
-    figures.append(section.formula("f_backup", "E_backup / E_heat", "Share of the heat that the back-up gives"))
+        section.formula("E_el", "E_hp", "Electricity of the season", "kWh",
+                        reference="the back-up takes fuel, so that only the machine draws electricity")
+        figures.append(section.formula("E_fuel", "E_backup / eta_boiler", "Fuel of the back-up boiler", "kWh",
+                                       reference="definition of the boiler's efficiency: heat over energy of the fuel"))
+    figures.append(section.formula("f_backup", "E_backup / E_heat", "Share of the heat that the back-up gives",
+                                   reference="derived: heat of the back-up over heat of the season"))
     return tuple(figures)
 
 
@@ -174,15 +186,19 @@ def _factors(section: Section, account: Account) -> tuple[str, ...]:
     figures = []
     if account.emissions:
         sums = " + ".join(f"{energy} * f_CO2_{tag}" for energy, tag in carriers)
-        figures.append(section.formula("m_CO2", sums, "Carbon dioxide of the energy used", "kg"))
+        figures.append(section.formula("m_CO2", sums, "Carbon dioxide of the energy used", "kg",
+                                       reference=grounds.EMISSIONS))
     if account.costs:
         sums = " + ".join(f"{energy} / 1 kWh * c_{tag}" for energy, tag in carriers)
-        figures.append(section.formula("C_run", sums, "Cost of the energy used, in the sheet's currency"))
+        figures.append(section.formula("C_run", sums, "Cost of the energy used, in the sheet's currency",
+                                       reference=grounds.COSTS))
     if account.kind == "output":
         if account.emissions:
             figures.append(section.formula("m_CO2_saved", "E_out_year * f_CO2_el",
-                                           "Carbon dioxide of the electricity that need not be bought", "kg"))
+                                           "Carbon dioxide of the electricity that need not be bought", "kg",
+                                           reference=grounds.EMISSIONS))
         if account.costs:
             figures.append(section.formula("C_saved", "E_out_year / 1 kWh * c_el",
-                                           "Value of the electricity given, in the sheet's currency"))
+                                           "Value of the electricity given, in the sheet's currency",
+                                           reference=grounds.COSTS))
     return tuple(figures)
