@@ -11,7 +11,7 @@ from calcpack.errors import CommandError, Fault
 SHAPES = ["text", "markdown", "html", "json"]
 
 
-@click.command()
+@click.command(short_help="What changed between two revisions, and why results moved.")
 @click.argument("names", nargs=-1, metavar="OLD NEW | [SPEC or FOLDER]...")
 @click.option("--since", "revision", metavar="REV", help="Compare every sheet that changed since this git revision.")
 @click.option("--format", "shape", type=click.Choice(SHAPES), default="text", show_default=True)

@@ -11,7 +11,7 @@ from calcpack.commands.reporting import CONTEXT, reported
 from calcpack.commands.sealing import seal_options, sealer
 
 
-@click.command(context_settings=CONTEXT)
+@click.command(context_settings=CONTEXT, short_help="Freeze a revision: one PDF with spec and record inside.")
 @click.argument("spec", type=click.Path(path_type=Path))
 @click.option("--for-information", is_flag=True,
               help="Issue what is not fit for use: stamped so on every page, with a list of what is open.")

@@ -11,7 +11,7 @@ from calcpack.commands.reporting import reported
 from calcpack.errors import CommandError, Fault
 
 
-@click.command()
+@click.command(short_help="One PDF of all sheets, with register and transmittal list.")
 @click.argument("sources", nargs=-1, type=click.Path(path_type=Path))
 @click.option("-o", "--output", type=click.Path(path_type=Path), default=Path("package.pdf"), show_default=True,
               help="The PDF to write.")

@@ -22,7 +22,7 @@ if TYPE_CHECKING:
 ROLES = ("prepared", "checked", "approved")
 
 
-@click.command()
+@click.command(short_help="How a sheet's check stands; take marks and signatures.")
 @click.argument("spec", type=click.Path(path_type=Path))
 @click.option("--all", "every", is_flag=True, help="List all marks, not only what is open.")
 @click.option("--json", "as_json", is_flag=True, help="Print how the check stands as JSON.")

@@ -9,7 +9,7 @@ from calcpack.commands.reporting import CONTEXT, reported
 from calcpack.errors import CommandError, Fault
 
 
-@click.command(context_settings=CONTEXT)
+@click.command(context_settings=CONTEXT, short_help="Tell whether an issued PDF is what its spec gives.")
 @click.argument("pdf", type=click.Path(path_type=Path))
 @click.option("--against", metavar="SPEC", help="A spec, or REV:path in git, that the one inside should be.")
 @click.option("--trust", multiple=True, type=click.Path(path_type=Path), metavar="CERT.pem",

@@ -12,7 +12,7 @@ from calcpack.issuing.gathering import Gathered, gather
 from calcpack.issuing.paper import FOR_USE, issued_pages, printed
 from calcpack.issuing.placing import alone, clear, put_new, require_free
 from calcpack.issuing.reasons import clashes, gates, in_words, unmet_points
-from calcpack.issuing.register import renew
+from calcpack.issuing.register import lost, renew
 from calcpack.issuing.shelf import ISSUED_IN, SUPERSEDED_IN
 from calcpack.points import unmet
 from calcpack.record import Record
@@ -75,6 +75,8 @@ def issue(path: Path, *, kind: str, date: str, dry_run: bool = False, seal: Seal
         raise CommandError(Fault(f"there is no spec {path}"))
     folder = path.parent
     with alone(folder, tell):
+        if missing := lost(folder):
+            raise NotIssuedError(missing)
         if not dry_run:
             clear((folder / ISSUED_IN, folder / ISSUED_IN / SUPERSEDED_IN))
             for mended in renew(folder):

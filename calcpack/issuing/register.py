@@ -1,15 +1,18 @@
 """All that was issued to the register of issues: one entry each, and which one is in force.
 
-``register.yaml`` and the stamped copies are derived: whoever loses them, or
-changes them by hand, gets them again with the next issue.
+``register.yaml`` and the stamped copies are derived: whoever loses them gets
+them again with the next issue. While the register is there it is a witness: an
+issue that it names and that is gone, or is another file now, is told.
 """
 from __future__ import annotations
 
+import hashlib
 import json
 from collections.abc import Iterator, Mapping, Sequence
 from pathlib import Path
 from typing import Any
 
+from calcpack.errors import Fault
 from calcpack.issuing.overlay import superseded_copy
 from calcpack.issuing.paper import FOR_INFORMATION, FOR_USE
 from calcpack.issuing.placing import make_folder
@@ -53,6 +56,30 @@ def _lines(entry: Mapping[str, Any]) -> Iterator[str]:
 def _text(value: str | None) -> str:
     """A YAML scalar: a JSON string, or null."""
     return json.dumps(value, ensure_ascii=False)
+
+
+def lost(folder: Path) -> tuple[Fault, ...]:
+    """What the register says was issued and is gone, or is another file now; nothing of a register that is damaged."""
+    import yaml
+    shelf = folder / ISSUED_IN
+    try:
+        # Texts alone: no scalar is given a meaning.
+        read = yaml.load((shelf / REGISTER).read_text("utf-8"), Loader=yaml.BaseLoader)
+        entries = [(shelf / Path(one["file"]).name, one["sha256"]) for one in read["issues"] if one["kind"] != KEPT]
+    except (OSError, ValueError, TypeError, LookupError, yaml.YAMLError):
+        return ()
+    return tuple(fault for path, sha256 in entries if (fault := _lost(path, sha256)) is not None)
+
+
+def _lost(path: Path, sha256: str) -> Fault | None:
+    hint = f"put the file back as it was issued; if it never left the office, take its entry out of {REGISTER}"
+    if not path.is_file():
+        return Fault(f"{path} was issued and is gone", hint=hint)
+    now = hashlib.sha256(path.read_bytes()).hexdigest()
+    if now == sha256:
+        return None
+    return Fault(f"{path} is not the file that was issued", found=f"SHA-256 {now[:12]}…",
+                 expected=f"SHA-256 {sha256[:12]}…, as {REGISTER} says", hint=hint)
 
 
 def renew(folder: Path) -> tuple[Path, ...]:

@@ -163,9 +163,15 @@ def _named(view: View) -> Verdict:
     return decided(not lost, "Nomenclature", f"{len(lost)} symbols are not listed")
 
 
+def _run_again(view: View) -> Verdict:
+    if view.record.get("issue"):
+        return PERSON, f"run: calcpack verify {view.record['issue']['file']}"
+    return PERSON, f"run: calcpack build {view.record['spec_file']}, and compare the hash of the record"
+
+
 JUDGES: dict[int, Judge] = {
     46: _method, 47: _alternate, 48: _alternate, 53: _marks, 54: _current,
     55: _letters, 56: _old_and_new, 59: _register, 60: _linked, 61: _placed,
-    63: lambda view: (PERSON, f"run: calcpack build {view.record['spec_file']}, and compare the hash of the record"),
+    63: _run_again,
     64: _versions, 65: _verified, 66: _covered, 67: _known_errors, 68: _by_hand, 69: _in_words, 70: _headed,
     71: _named}

@@ -25,23 +25,36 @@ def known_identities(record: Data) -> dict[str, str]:
     return {one["symbol"]: one["identity"] for one in (*record["inputs"], *record["steps"])}
 
 
-def input_seen(entry: Data) -> str:
-    """An input's row: its value and unit by identity, tolerance, source, note and title as printed."""
+def documents(record: Data) -> dict[str, str]:
+    """What the ids that sources and references name stand for: documents by their text, assumptions by all they say."""
+    found = {one["id"]: one["text"] for one in record.get("references") or ()}
+    return found | {one["id"]: assumption_seen(one) for one in record.get("assumptions") or ()}
+
+
+def _cited(text: str | None, cited: Known) -> list[str]:
+    """The documents that a source or a reference names: whoever agrees with 'R1' agrees with what R1 is."""
+    return [says for name, says in cited.items() if re.search(rf"(?<![\w-]){re.escape(name)}(?![\w-])", text or "")]
+
+
+def input_seen(entry: Data, cited: Known) -> str:
+    """An input's row: value and unit by identity, tolerance, note and title as printed, source with its document."""
     tol = entry.get("tol")
     return identity(("input", entry["identity"], f"{tol['shown']} {tol['unit']}" if tol else None,
-                     entry.get("source"), entry.get("note"), entry.get("title")))
+                     entry.get("source"), _cited(entry.get("source"), cited), entry.get("note"), entry.get("title")))
 
 
-def step_seen(entry: Data) -> str:
-    """A step: all that its value hangs on by identity, title, reference and note as printed."""
-    return identity(("step", entry["identity"], entry.get("title"), entry.get("reference"), entry.get("note")))
+def step_seen(entry: Data, cited: Known) -> str:
+    """A step: all that its value hangs on by identity, title and note as printed, reference with its document."""
+    return identity(("step", entry["identity"], entry.get("title"), entry.get("reference"),
+                     _cited(entry.get("reference"), cited), entry.get("note")))
 
 
-def limit_seen(entry: Data, known: Known) -> str:
-    """A limit: what it bounds by identity, its bound, its reason and waiver, and whether it holds."""
+def limit_seen(entry: Data, known: Known, cited: Known) -> str:
+    """A limit: what it bounds by identity, its bound, its reason, source and waiver, and whether it holds."""
     waiver = entry.get("waiver")
     return identity(("limit", entry["id"], known.get(entry["symbol"], entry["symbol"]), entry["sense"], entry["bound"],
-                     entry.get("text"), entry.get("why"), entry.get("source"), entry["status"],
+                     entry.get("text"), entry.get("why"), entry.get("source"),
+                     _cited(entry.get("source"), cited), entry["status"],
                      sorted(waiver.items()) if waiver else None))
 
 

@@ -10,6 +10,7 @@ from typing import Any
 from calcpack.record.identity import identity
 from calcpack.review.identities import (
     assumption_seen,
+    documents,
     figures_seen,
     input_seen,
     known_identities,
@@ -51,14 +52,14 @@ class Target:
 
 def targets_of(data: Data) -> tuple[Target, ...]:
     """Everything on the sheet that can be marked: limits, inputs, assumptions, steps, figures."""
-    known = known_identities(data)
-    found = [Target("limit", one["id"], limit_seen(one, known), one["value"], one.get("text") or one["symbol"])
+    known, cited = known_identities(data), documents(data)
+    found = [Target("limit", one["id"], limit_seen(one, known, cited), one["value"], one.get("text") or one["symbol"])
              for one in data["limits"]]
-    found += [Target("input", one["symbol"], input_seen(one), _shown(one), one.get("title") or "")
+    found += [Target("input", one["symbol"], input_seen(one, cited), _shown(one), one.get("title") or "")
               for one in data["inputs"]]
     found += [Target("assumption", one["id"], assumption_seen(one), None, one["text"])
               for one in data.get("assumptions") or ()]
-    found += [Target("step", one["symbol"], step_seen(one), _shown(one), one.get("title") or "", one["id"])
+    found += [Target("step", one["symbol"], step_seen(one, cited), _shown(one), one.get("title") or "", one["id"])
               for one in data["steps"]]
     found += [Target("figure", name, seen, None, title) for name, (title, seen) in figures_seen(data, known).items()]
     return tuple(found)
@@ -69,11 +70,11 @@ def _shown(entry: Data) -> str:
 
 
 def shows_the_same(seen: str | None, now: str | None) -> bool:
-    """Whether a printed number still rounds to the one that was seen, in the same unit.
+    """Whether two printed numbers are the same to the digits of the one that has fewer, in the same unit.
 
     Decided on the printed texts alone: ``'88.31 °C'`` was seen, ``'88.312 °C'``
-    is the same, ``'88.32 °C'`` is not. A second reading in brackets, such as
-    the Celsius twin of a level, is not compared.
+    and ``'88.3 °C'`` are the same, ``'88.32 °C'`` is not. A second reading in
+    brackets, such as the Celsius twin of a level, is not compared.
     """
     if seen is None or now is None:
         return seen == now
@@ -81,7 +82,8 @@ def shows_the_same(seen: str | None, now: str | None) -> bool:
     if old is None or new is None or old[2] != new[2]:
         return seen == now
     was, present = (Decimal(one[1].replace("−", "-")) for one in (old, new))
-    return abs(present - was) <= Decimal(5).scaleb(was.as_tuple().exponent - 1)
+    coarser = max(was.as_tuple().exponent, present.as_tuple().exponent)
+    return abs(present - was) <= Decimal(5).scaleb(coarser - 1)
 
 
 _CASE = ("method", "method_title", "method_text", "assumes", "leaves_out")

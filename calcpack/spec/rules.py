@@ -100,7 +100,7 @@ def inputs(draft: Draft) -> Iterator[Wrong]:
         if entry.source is None and entry.link is None and status != "draft":
             yield Wrong(("case", "inputs", symbol, "source"), Fault(
                 f"input {symbol!r} has no source",
-                expected="the id of a reference or an assumption, or words",
+                expected="the id of a reference or an assumption, or words, as in {value: …, source: R1}",
                 hint=f"only a draft may leave it out, and the status is {status!r}"),
                 at_key=True, spoils="nothing")
 

@@ -82,10 +82,10 @@
     if (seen === undefined || now === undefined) return seen === now;
     const was = printed(seen), is = printed(now);
     if (was === null || is === null || was.unit !== is.unit) return seen === now;
-    const least = Math.min(was.power - 1, is.power);
+    const least = Math.min(was.power, is.power) - 1;
     const scaled = (digits, power) => digits * 10n ** BigInt(power - least);
     const off = scaled(is.digits, is.power) - scaled(was.digits, was.power);
-    return (off < 0n ? -off : off) <= scaled(5n, was.power - 1);
+    return (off < 0n ? -off : off) <= scaled(5n, Math.max(was.power, is.power) - 1);
   }
 
   /** Whether what a mark saw is still what the place shows. */

@@ -29,7 +29,7 @@ def test_the_last_issue_for_use_is_bound_and_named_with_its_hash(issued_twice, t
 
 def test_an_issue_for_information_is_none_for_use(issued_twice):
     shelf = issued_twice / "issued"
-    for path in shelf.glob("*.pdf"):
+    for path in (*shelf.glob("*.pdf"), shelf / "register.yaml"):
         path.unlink()
     assert CliRunner().invoke(main, ["issue", str(issued_twice / "rinse.yaml"), "--for-information",
                                      "--date", "2026-12-01"]).exit_code == 0

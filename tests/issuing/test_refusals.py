@@ -120,6 +120,7 @@ def test_a_signature_after_the_day_of_issue_is_refused(ready: Path) -> None:
 
 def test_a_revision_is_not_issued_on_a_day_before_the_last(issued_twice: Path) -> None:
     (issued_twice / "issued" / "RT-12-B.pdf").unlink()
+    (issued_twice / "issued" / "register.yaml").unlink()
     [fault] = refused(issued_twice / "rinse.yaml", FOR_INFORMATION, "2026-10-05").faults
     assert fault.what == "the day of issue is before that of revision A" and fault.expected == "2026-10-06 or later"
 
@@ -149,7 +150,8 @@ def test_a_later_revision_is_not_held_against_a_sheet(issued_twice: Path) -> Non
 
 @pytest.mark.parametrize("mark, hint", [("A", None), ("3", "numbers come before letters, not after them")])
 def test_a_revision_comes_after_the_last(issued_twice: Path, mark: str, hint: str | None) -> None:
-    (issued_twice / "issued" / "RT-12-A.pdf").unlink()
+    for name in ("RT-12-A.pdf", "register.yaml"):
+        (issued_twice / "issued" / name).unlink()
     path = at_revision(issued_twice, mark)
     for kind in (FOR_USE, FOR_INFORMATION):
         first = refused(path, kind).faults[0]

@@ -16,7 +16,7 @@ from calcpack.issuing.attached import carried_files
 from calcpack.issuing.issue import NotIssuedError, issue
 from calcpack.issuing.overlay import superseded_copy
 from calcpack.issuing.paper import FOR_INFORMATION, FOR_USE
-from calcpack.issuing.register import renew
+from calcpack.issuing.register import lost, renew
 from calcpack.issuing.shelf import issued_sheets
 from calcpack.pipeline import record_and_comparison
 
@@ -158,8 +158,8 @@ def test_a_refusal_beside_a_kept_record_writes_nothing(issued_twice: Path) -> No
 def test_a_kept_record_is_superseded_and_has_no_copy(issued_twice: Path) -> None:
     shelf = issued_twice / "issued"
     raw = next(raw for name, raw in carried_files((shelf / "RT-12-A.pdf").read_bytes()).items() if "json" in name)
-    for path in (shelf / "RT-12-A.pdf", shelf / "RT-12-B.pdf", shelf / "superseded" / "RT-12-A.pdf"):
-        path.unlink()
+    for name in ("RT-12-A.pdf", "RT-12-B.pdf", "superseded/RT-12-A.pdf", "register.yaml"):
+        (shelf / name).unlink()
     (shelf / "RT-12-A.json").write_bytes(raw)
     done = issue(issued_twice / "rinse.yaml", kind=FOR_USE, date="2026-11-13")
     assert done.supersedes == "A" and not list((shelf / "superseded").iterdir())
@@ -221,3 +221,19 @@ def test_a_file_in_the_place_of_the_copies_is_told(issued_twice: Path) -> None:
     (issued_twice / "issued/superseded").touch()
     with pytest.raises(CommandError, match="cannot write into"):
         renew(issued_twice)
+
+
+def test_an_issue_that_the_register_names_and_that_is_gone_or_another_stops_the_next_one(issued_twice: Path) -> None:
+    shelf, elsewhere = issued_twice / "issued", issued_twice / "issued" / "superseded" / "RT-12-A.pdf"
+    first, whole = shelf / "RT-12-A.pdf", (shelf / "RT-12-A.pdf").read_bytes()
+    register = (shelf / "register.yaml").read_bytes()
+    assert lost(issued_twice) == ()
+    first.unlink()
+    with pytest.raises(NotIssuedError, match=r"RT-12-A\.pdf was issued and is gone"):
+        issue(issued_twice / "rinse.yaml", kind=FOR_USE, date="2026-11-20")
+    shutil.copy(elsewhere, first)
+    with pytest.raises(NotIssuedError, match=r"RT-12-A\.pdf is not the file that was issued"):
+        issue(issued_twice / "rinse.yaml", kind=FOR_USE, date="2026-11-20", dry_run=True)
+    assert (shelf / "register.yaml").read_bytes() == register
+    first.write_bytes(whole)
+    assert lost(issued_twice) == ()

@@ -15,11 +15,12 @@ LEVELS = {"condensing": "temperature", "evaporating": "temperature"}
 
 def error_of(name, choices, inputs):
     with pytest.raises(NoAnswerError) as caught:
-        solve_spec(Path("case.yaml"), inputs, text=starter(name, choices), name="case.yaml")
+        solve_spec(Path("case.yaml"), inputs, text=(text := starter(name, choices)), name="case.yaml")
     error = caught.value
     assert error.exit_status == 3
     assert len(error.faults) == 1
-    assert (error.faults[0].place.file, error.faults[0].place.line) == ("case.yaml", 16), "told at the sheet's case"
+    line = next(at for at, words in enumerate(text.splitlines(), start=1) if words.startswith("  method: "))
+    assert (error.faults[0].place.file, error.faults[0].place.line) == ("case.yaml", line), "told at the sheet's case"
     return error
 
 

@@ -51,6 +51,8 @@ def test_a_target_carries_the_number_as_printed_its_unit_and_its_step(cooler: Da
     ("at_most: 12 m2", "at_most: 13 m2", {"limit:L1"}),
     ("why: the drain", "why: the sewer", {"limit:L2"}),
     ("basis: lagging", "basis: thick lagging", {"assumption:A1"}),
+    ("works, page 3", "works, page 4",
+     {"input:Q_dot", "input:T_in", "input:T_out", "input:c_w", "input:f_foul", "limit:L1", "limit:L2"}),
 ])
 def test_what_moves_lapses_with_all_that_hangs_on_it_and_nothing_else(
         cooler: Data, change: Callable[[str, str], Data], old: str, new: str, moved: set[str]) -> None:
@@ -106,12 +108,12 @@ def test_whatever_else_is_printed_voids_a_signature(cooler: Data, part: str, key
 
 @pytest.mark.parametrize(("seen", "now", "same"), [
     ("88.31 °C", "88.31 °C", True), ("88.31 °C", "88.312 °C", True), ("88.31 °C", "88.32 °C", False),
-    ("88.31 °C", "88.3 °C", False), ("88.31 °C", "88.31 K", False), ("4.239", "4.2391", True),
-    ("4.239", "4.239 kW", False),
+    ("88.31 °C", "88.3 °C", True), ("88.36 °C", "88.3 °C", False), ("88.31 °C", "88.31 K", False),
+    ("4.239", "4.2391", True), ("4.239", "4.239 kW", False),
     ("354.78 K (81.63 °C)", "354.781 K (81.631 °C)", True), ("-1.5e-6 m³", "-1.52e-6 m³", True),
     ("-1.5e-6 m³", "-1.5e-5 m³", False), ("−3 K", "-3.2 K", True), ("none", "none", True), ("none", "4", False),
     (None, None, True), (None, "4", False), ("4", None, False), ("120 kW", "120.4 kW", True)])
-def test_a_number_is_the_same_while_it_rounds_to_the_one_seen(seen: str | None, now: str | None, same: bool) -> None:
+def test_numbers_are_the_same_to_the_digits_of_the_coarser(seen: str | None, now: str | None, same: bool) -> None:
     assert shows_the_same(seen, now) is same
 
 
