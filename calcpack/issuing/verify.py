@@ -152,7 +152,10 @@ def _taken(data: dict) -> list[str]:
 
 def _pages(content: bytes, carried: CarriedSheet, texts: Sequence[str], seal: Seal, made: bytes,
            record_told: bool) -> list[Stage]:
-    record, here = carried.record, page_texts(made)
+    record = carried.record
+    if words := _stamped(record, texts):
+        return [Stage("pages", "NOT COMPARED: they carry the stamp of a superseded issue", blocked=words)]
+    here = page_texts(made)
     words, numbers = counts(texts)
     figures = f"{_many(len(texts), 'page')} made again: {_many(words, 'word')}, {_spaced(numbers)} of them with digits"
     engines = _engines(record)
@@ -162,7 +165,7 @@ def _pages(content: bytes, carried: CarriedSheet, texts: Sequence[str], seal: Se
         return [Stage("pages", f"{figures}; {len(found)} places are worded or laid out otherwise", remarks=engines,
                       blocked=f"the pages were made by calcpack {version}, which prints otherwise; "
                               "install that version to compare them")]
-    pages = Stage("pages", f"{figures}, {_outcome(len(found))}", found, remarks=_stamped(record, texts))
+    pages = Stage("pages", f"{figures}, {_outcome(len(found))}", found)
     if engines:
         return [pages, Stage("drawings", "not compared: made by other versions than those here", remarks=(
             *engines, "with other versions of what makes the pages, text is compared and drawings are not"))]
@@ -171,12 +174,12 @@ def _pages(content: bytes, carried: CarriedSheet, texts: Sequence[str], seal: Se
     return [pages, drawings_stage(content, seal, made, told, packed[0] if packed else "")]
 
 
-def _stamped(record: Record, texts: Sequence[str]) -> tuple[str, ...]:
-    """What to do about a copy that was stamped when a later revision was issued."""
+def _stamped(record: Record, texts: Sequence[str]) -> str:
+    """What to do about a copy that was stamped when a later revision was issued; empty for an issue itself."""
     if not all(STAMP in " ".join(text.split()) for text in texts):
-        return ()
+        return ""
     return (f"this is the stamped copy of a superseded issue; the issue itself, {record.data['issue'].get('file')}, "
-            "lies in the folder above and can be verified",)
+            "lies in the folder above and can be verified")
 
 
 def _outcome(count: int) -> str:
