@@ -5,7 +5,7 @@ import json
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from pathlib import Path
-from typing import TYPE_CHECKING, Any
+from typing import Any
 
 from calcpack.errors import CommandError, Fault
 from calcpack.issuing.attached import Attachment
@@ -13,13 +13,10 @@ from calcpack.issuing.shelf import Issued, before, issued_sheets
 from calcpack.package.family import kin
 from calcpack.package.links import family_of
 from calcpack.record import Record
-from calcpack.review.reading import read_review
-from calcpack.review.standing import Standing, standing
+from calcpack.review.beside import standing_beside
+from calcpack.review.standing import Standing
 from calcpack.review.writing import review_path
 from calcpack.spec import Spec
-
-if TYPE_CHECKING:
-    from calcpack.review.marks import ReviewFile
 
 Data = Mapping[str, Any]
 
@@ -28,7 +25,8 @@ Data = Mapping[str, Any]
 class Gathered:
     """What an issue is made of: the spec and its record as solved now, and what lies beside the spec.
 
-    ``files`` are attached as they are; ``shelf`` is what was issued before, of
+    ``standing`` tells how the check stands, None where the sheet has no review
+    file; ``files`` are attached as they are; ``shelf`` is what was issued before, of
     all sheets in the folder.
     """
 
@@ -36,16 +34,11 @@ class Gathered:
     spec: Spec = field(repr=False)
     record: Record = field(repr=False)
     comparison: Data | None
-    review: ReviewFile | None
+    standing: Standing | None
     files: tuple[Attachment, ...]
     verification: Data | None
     family: Data
     shelf: tuple[Issued, ...]
-
-    @property
-    def standing(self) -> Standing | None:
-        """How the check stands; None where the sheet has no review file."""
-        return None if self.review is None else standing(self.record.data, self.review)
 
     @property
     def earlier(self) -> Issued | None:
@@ -66,11 +59,11 @@ def gather(path: Path) -> Gathered:
                  issues=shelf, stems={})
     spec = read_spec(path)
     beside, run = review_path(path), path.with_name(VERIFICATION)
-    review = read_review(beside, number=record.number) if beside.is_file() else None
+    stands = standing_beside(path, record)
     files = _files(path, spec, beside)
     if not {spec.sha256, files[0].sha256} == {record.data["spec_sha256"]}:
         raise CommandError(Fault(f"{path} was changed while it was solved", hint="issue it again"))
-    return Gathered(path, spec, record, _plain(comparison_of(path, as_issued(record))), review, files,
+    return Gathered(path, spec, record, _plain(comparison_of(path, as_issued(record))), stands, files,
                     _verified(run, record) if run.is_file() else None, _plain(around), shelf)
 
 

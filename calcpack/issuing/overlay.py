@@ -12,7 +12,8 @@ from calcpack.render.pdf import pdf_bytes
 if TYPE_CHECKING:
     import pikepdf
 
-
+STAMP = "SUPERSEDED BY REVISION"
+"""How the stamp begins on every page of a copy of an issue that is in force no more."""
 LAYER = "/Superseded"
 
 

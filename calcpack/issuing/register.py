@@ -13,7 +13,7 @@ from pathlib import Path
 from typing import Any
 
 from calcpack.errors import Fault
-from calcpack.issuing.overlay import superseded_copy
+from calcpack.issuing.overlay import STAMP, superseded_copy
 from calcpack.issuing.paper import FOR_INFORMATION, FOR_USE
 from calcpack.issuing.placing import make_folder
 from calcpack.issuing.shelf import ISSUED_IN, KEPT, SUPERSEDED_IN, Issued, before, issued_sheets, successor
@@ -106,7 +106,7 @@ def _stamped(one: Issued, issues: Sequence[Issued], shelf: Path) -> Path | None:
     path = shelf / SUPERSEDED_IN / one.path.name
     if path.is_file():
         return None
-    words = f"SUPERSEDED BY REVISION {after.revision}, issued {after.date}"
+    words = f"{STAMP} {after.revision}, issued {after.date}"
     make_folder(path.parent)
     write_whole(path, superseded_copy(one.path.read_bytes(), one.number, words, f"../{after.path.name}"))
     return path

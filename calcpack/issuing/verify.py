@@ -12,6 +12,7 @@ from pathlib import Path
 
 from calcpack.errors import CalcpackError
 from calcpack.issuing.carried import CarriedSheet, NotVerifiableError, opened, read_carried
+from calcpack.issuing.overlay import STAMP
 from calcpack.issuing.paper import print_engine
 from calcpack.issuing.seal_reading import Seal, read_seal
 from calcpack.issuing.verify_again import AGAIN, Again
@@ -26,9 +27,6 @@ from calcpack.record import Record
 
 PACKER = "zlib"
 """The library that packs the parts of a PDF; another version gives other bytes for the same content."""
-
-STAMP = "SUPERSEDED BY REVISION"
-"""Stands on every page of a copy of an issue that is in force no more."""
 
 
 def verify(content: bytes, name: str, *, again: Again = AGAIN, against: str | None = None,
